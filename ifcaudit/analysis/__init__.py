@@ -1,0 +1,1 @@
+"""Mechanics of single beams, vectorised; no rules, no model."""

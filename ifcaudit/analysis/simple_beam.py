@@ -1,0 +1,1 @@
+"""Simply supported beams under piecewise-linear and point loads, exact, many at once."""

@@ -1,0 +1,1 @@
+"""Verdicts: demand against capacity by a published standard."""

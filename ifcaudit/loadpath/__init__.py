@@ -1,0 +1,1 @@
+"""Area loads, takedown from secondary to primary members, combinations, live-load reduction."""

@@ -1,0 +1,1 @@
+"""Rules as data: standards, materials, occupancies, combinations and section catalogues, read once and validated."""

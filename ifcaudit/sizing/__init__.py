@@ -1,0 +1,1 @@
+"""The lightest adequate section."""
