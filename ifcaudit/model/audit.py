@@ -67,7 +67,7 @@ class BeamResult:
         name: Name in the model.
         storey: Containing storey.
         status: Verdict.
-        reason: For ``not checked`` and ``set aside``: what is missing and how to supply it; else what governs, in words.
+        reason: For ``not checked`` and ``set aside``: what is missing and how to supply it; else what governs.
         governing: Name of the governing check.
         utilization: Largest utilization.
         section: Catalogue designation, or a description of the dimensions.

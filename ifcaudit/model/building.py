@@ -40,7 +40,7 @@ class Beam:
         width: Extent of the section in plan across the axis [m].
         bending: How the profile is turned.
         profile: The section drawn; ``None`` where it could not be read.
-        designations: Texts that may name the section, most trusted first (profile, type, name, object type, properties).
+        designations: Texts that may name the section, most trusted first (profile, type, name, object type).
         material: What the model says about the material.
         set_aside: Why this element is no load-carrying beam; empty when it is one.
         unreadable: What is missing to judge it (no body, mesh only …) and how to supply it; empty when complete.
