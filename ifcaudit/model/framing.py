@@ -54,6 +54,7 @@ class FramedBeam:
         interior: Supports between the ends, by rising station.
         start_gap: Text naming the nearest candidate and its distance, when ``start`` is ``None``.
         end_gap: The same for ``end``.
+        bedded: Names of walls that the beam lies along, so that it does not span freely; empty otherwise.
         standing: Names of columns or walls standing on this beam.
         findings: Remarks for the engineer.
     """
@@ -64,6 +65,7 @@ class FramedBeam:
     interior: tuple[EndSupport, ...] = ()
     start_gap: str = ""
     end_gap: str = ""
+    bedded: str = ""
     standing: tuple[str, ...] = ()
     findings: tuple[str, ...] = ()
 
