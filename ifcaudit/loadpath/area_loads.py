@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import defaultdict
 from collections.abc import Callable
 from dataclasses import dataclass
 
@@ -16,6 +17,14 @@ from ifcaudit.provenance import Source, Sourced
 from ifcaudit.rulebook.records import RuleSet, RuleValue
 from ifcaudit.units import standard_gravity
 
+_REMEDIES = defaultdict(
+    lambda: "Set it in a rule file.",
+    {
+        "loads.floor_live": "Settle it with --live-load.",
+        "loads.partitions": "Settle it with --live-load, which is the whole load.",
+        "loads.superimposed_dead": "Settle it with --superimposed-dead.",
+    },
+)
 DensityOf = Callable[[MaterialText], Sourced[float]]
 
 
@@ -73,7 +82,9 @@ def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf) -> AreaLoad:
             ("partition allowance", loads.partitions, LoadCase.LIVE_UNREDUCED),
         )
     )
-    inputs: list[tuple[str, Sourced[object]]] = [("superimposed dead load", _from_rules(superimposed))]
+    inputs: list[tuple[str, Sourced[object]]] = [
+        ("superimposed dead load of roofs" if slab.roof else "superimposed dead load", _from_rules(superimposed))
+    ]
     for name, value, case in live:
         pressures[case] += value.value
         inputs.append((name, _from_rules(value)))
@@ -93,9 +104,12 @@ def _weight(slab: Slab, density_of: DensityOf) -> float:
 
 
 def _from_rules(value: RuleValue) -> Sourced[object]:
-    """A rule value as an input; without an override it is the rule set's own assumption about the use of the floor."""
-    where = "command line" if value.overridden else f"{value.key}: {value.clause}"
-    return Sourced(value=value.value, source=Source.RULES, where=where)
+    """A rule value as an input; without an override it is an assumption about the use of the floor."""
+    if value.overridden:
+        return Sourced(value=value.value, source=Source.RULES, where=f"{value.text} (command line)")
+    return Sourced(
+        value=value.value, source=Source.ASSUMED, where=f"{value.text} ({value.clause})", remedy=_REMEDIES[value.key]
+    )
 
 
 def _layer_inputs(slab: Slab, density_of: DensityOf) -> list[tuple[str, Sourced[object]]]:

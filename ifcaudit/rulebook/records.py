@@ -128,12 +128,14 @@ class MaterialRules:
         family_words: Lower-case word (several languages) -> family.
         default_grades: Section family (``W``, ``HSS``, ``*`` for any) -> grade assumed when the model names none.
         densities: Lower-case material word -> density as a rule value, for slab layers.
+        one_way_words: Lower-case words (several languages) of slabs that span one way: deck, planks, precast units.
     """
 
     grades: Mapping[str, Material]
     family_words: Mapping[str, MaterialFamily]
     default_grades: Mapping[str, str]
     densities: Mapping[str, RuleValue]
+    one_way_words: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
