@@ -1,0 +1,1 @@
+"""Shared builders of test scenes."""
