@@ -21,6 +21,9 @@ _DIMENSION_UNITS = {
     "line load": "N/m",
     "density": "kg/m**3",
     "mass per length": "kg/m",
+    "section modulus": "m**3",
+    "second moment of area": "m**4",
+    "warping constant": "m**6",
     "ratio": "",
 }
 _EXAMPLES = {"pressure": '"50 psf", "2.4 kPa", "2.4 kN/m2"', "length": '"9 m", "30 ft"', "density": '"2400 kg/m3"'}
@@ -29,7 +32,7 @@ _TABLE_UNITS = {
     "us": {"ratio": "", "length": "ft", "area": "ft2", "force": "kip", "moment": "kip-ft", "deflection": "in"},
 }
 _NUMBER_AND_UNIT = re.compile(r"^\s*([-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?)\s*(.*?)\s*$")
-_TRAILING_EXPONENT = re.compile(r"([A-Za-z])\s*\^?\s*([234])(?![\d.])")
+_TRAILING_EXPONENT = re.compile(r"([A-Za-z])\s*\^?\s*([2346])(?![\d.])")
 
 
 @cache
