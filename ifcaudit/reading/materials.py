@@ -44,12 +44,6 @@ class Materials:
         self._properties = properties
         self._texts: dict[int, MaterialText] = {}
         self._layers: dict[int, tuple[MaterialLayer, ...]] = {}
-        self._findings: dict[str, None] = {}
-
-    @property
-    def findings(self) -> tuple[str, ...]:
-        """Remarks on the model's materials met so far."""
-        return tuple(self._findings)
 
     def text(self, definition: Any) -> MaterialText:
         """Return names, grades and density of any material definition; a single density only when all agree."""
@@ -72,7 +66,7 @@ class Materials:
         if profile_set is None:
             return None
         composite = self._model.get(profile_set, "CompositeProfile")
-        members = self._model.get(profile_set, "MaterialProfiles") or ()
+        members: tuple[Any, ...] = self._model.get(profile_set, "MaterialProfiles") or ()
         if composite is not None or len(members) != 1:
             return composite
         return self._model.get(members[0], "Profile")

@@ -21,16 +21,20 @@ FloatArray: TypeAlias = NDArray[np.float64]
 IntArray: TypeAlias = NDArray[np.int64]
 Gradient: TypeAlias = tuple[float, float]
 
+GEOMETRY_ERRORS = (ValueError, ArithmeticError, LookupError, shapely.errors.ShapelyError)
+"""What broken geometry (empty outlines, missing corners, self-crossing rings) makes the libraries raise."""
 STEEPEST = 0.17
 """Least vertical component of a unit normal that still makes a face a top or an underside (about 80° of slope)."""
 SAME_SLOPE = 0.05
 """Difference in gradient up to which faces belong to one plane."""
 SAME_LEVEL = 0.03
 """Difference in level up to which faces of one slope are one face [m]."""
+LEAST_THICKNESS = 1e-3
+"""Depth below which a fitted underside is no underside [m]."""
 SLIVER = 1e-4
 """Plan area below which a piece is drawing noise [m²]."""
-LEAST_SHARE = 0.01
-"""Part of the plan below which a plane of another slope is taken into its neighbour."""
+LEAST_SHARE = 0.05
+"""Part of the plan below which a plane of another slope is taken into the one nearest in slope."""
 UNCUT = "it is cut by a plane that is not vertical; the uncut outline is used"
 """Finding where a cut was not followed."""
 MOST_PLANES = 24
@@ -251,9 +255,15 @@ def plates_of_mesh(vertices: FloatArray, triangles: IntArray) -> tuple[Plate, ..
     if abs(faces.vectors[up, 2].sum() + faces.vectors[down, 2].sum()) > 0.05 * faces.vectors[up, 2].sum():
         return _block(faces, np.concatenate([up, down]))
     planes = _planes(faces, up)
-    plates = [_plate_under(faces, plane, down, alone=len(planes) == 1) for plane in planes]
+    plates = [_plate_under(faces, plane, outline, down, alone=len(planes) == 1) for plane, outline in planes]
     readable = [plate for plate in plates if not plate.plan.is_empty]
     return tuple(sorted(readable, key=lambda plate: -plate.plan.area))
+
+
+def plan_of_mesh(vertices: FloatArray, triangles: IntArray) -> PlanArea:
+    """Return the plan outline of a mesh, from its faces that are not vertical."""
+    faces = _faces(np.asarray(vertices, dtype=np.float64), np.asarray(triangles, dtype=np.int64))
+    return faces.plan(np.concatenate([faces.facing(1.0), faces.facing(-1.0)]))
 
 
 def _block(faces: _Faces, chosen: IntArray) -> tuple[Plate, ...]:
@@ -269,30 +279,45 @@ def _block(faces: _Faces, chosen: IntArray) -> tuple[Plate, ...]:
     )
 
 
-def _planes(faces: _Faces, up: IntArray) -> list[IntArray]:
-    """Group the upward triangles by slope; edges and very small planes go with what they adjoin."""
+def _planes(faces: _Faces, up: IntArray) -> list[tuple[IntArray, IntArray]]:
+    """Group the upward triangles by slope.
+
+    Returns:
+        Per plane the triangles that define it, and those of its outline, very small planes beside it included.
+        Square-cut edges belong to no plane.
+    """
+    groups = _by_slope(faces, up)
+    if groups is None:
+        return [(up, up)]
+    weight, slopes = faces.vectors[:, 2], [faces.gradients()[group[0]] for group in groups]
+    total = float(weight[up].sum())
+    shares = [float(weight[group].sum()) / total for group in groups]
+    kept: dict[int, list[int]] = {}
+    for k in sorted(range(len(groups)), key=lambda number: -shares[number]):
+        if kept and _is_edge(slopes[k], [slopes[j] for j in kept], shares[k]):
+            continue
+        if kept and shares[k] < LEAST_SHARE:
+            nearest = min(kept, key=lambda j: float(np.abs(slopes[j] - slopes[k]).max()))
+            kept[nearest] += groups[k]
+        else:
+            kept[k] = list(groups[k])
+    return [(np.array(groups[k], dtype=np.int64), np.array(outline, dtype=np.int64)) for k, outline in kept.items()]
+
+
+def _by_slope(faces: _Faces, up: IntArray) -> list[list[int]] | None:
+    """Return the triangles of each slope, the largest first in each; ``None`` for a curved surface."""
     gradients, weight = faces.gradients(), faces.vectors[:, 2]
     groups: list[list[int]] = []
-    slopes: list[FloatArray] = []
     for index in sorted(up.tolist(), key=lambda number: -weight[number]):
-        matches = [k for k, slope in enumerate(slopes) if np.abs(gradients[index] - slope).max() < SAME_SLOPE]
-        if matches:
-            groups[matches[0]].append(index)
+        for group in groups:
+            if np.abs(gradients[index] - gradients[group[0]]).max() < SAME_SLOPE:
+                group.append(index)
+                break
         else:
             groups.append([index])
-            slopes.append(gradients[index])
-        if len(groups) > 8 * MOST_PLANES:
-            return [up]
-    total = float(weight[up].sum())
-    order = sorted(range(len(groups)), key=lambda k: -float(weight[groups[k]].sum()))
-    kept: list[int] = []
-    for k in order:
-        share = float(weight[groups[k]].sum()) / total
-        if not kept or (share >= LEAST_SHARE and not _is_edge(slopes[k], [slopes[j] for j in kept], share)):
-            kept.append(k)
-    if len(kept) > MOST_PLANES:
-        return [up]
-    return [np.array(groups[k], dtype=np.int64) for k in kept]
+        if len(groups) > MOST_PLANES:
+            return None
+    return groups
 
 
 def _is_edge(slope: FloatArray, main: Sequence[FloatArray], share: float) -> bool:
@@ -303,8 +328,8 @@ def _is_edge(slope: FloatArray, main: Sequence[FloatArray], share: float) -> boo
     return any(abs(float(normal @ np.append(-each, 1.0))) / sqrt(1.0 + float(each @ each)) < 0.1 for each in main)
 
 
-def _plate_under(faces: _Faces, plane: IntArray, down: IntArray, *, alone: bool) -> Plate:
-    plan = faces.plan(plane)
+def _plate_under(faces: _Faces, plane: IntArray, outline: IntArray, down: IntArray, *, alone: bool) -> Plate:
+    plan = faces.plan(outline)
     vectors = faces.vectors[plane].sum(axis=0)
     gradient = _flat_if_level((-float(vectors[0] / vectors[2]), -float(vectors[1] / vectors[2])))
     reference = centre_of(plan) if not plan.is_empty else (0.0, 0.0)
@@ -313,6 +338,9 @@ def _plate_under(faces: _Faces, plane: IntArray, down: IntArray, *, alone: bool)
     below = down if alone or not inside.any() else down[inside]
     bottom, _ = _level(faces, below, gradient, reference, sign=-1.0)
     ratio = hypot(1.0, *gradient)
+    if top - bottom < LEAST_THICKNESS:
+        # A stair, a wedge: planes fitted to its top and underside cross, so its mean depth stands for both.
+        stepped, bottom = True, top - faces.volume / float(faces.vectors[faces.facing(1.0), 2].sum())
     thickness = max(top - bottom, 0.0) / ratio
     if alone and plan.area > 0.0:
         # Hollow cores, ribs and steps: the weight is that of the volume, not that of the enclosing depth.

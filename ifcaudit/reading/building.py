@@ -1,0 +1,76 @@
+"""From an IFC file to the building the later stages work on."""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Callable, Sequence
+from pathlib import Path
+
+from ifcaudit.model.building import Beam, Building, Slab
+from ifcaudit.reading.ifc_file import Model, open_model
+
+Progress = Callable[[str], None]
+
+
+def _silent(_: str) -> None:
+    """Report nothing."""
+
+
+def read_building(path: Path, progress: Progress | None = None) -> Building:
+    """Read beams, slabs, columns and walls of a model in world coordinates and SI units.
+
+    Args:
+        path: The IFC file.
+        progress: Called with the name of each step before it starts.
+
+    Returns:
+        The building, with remarks on what could not be read.
+
+    Raises:
+        ModelFileError: The file cannot be opened or is no IFC model.
+    """
+    # Imported here: the geometry libraries take half a second to load, and a wrong path needs none of them.
+    from ifcaudit.reading.beams import read_beams
+    from ifcaudit.reading.bodies import Bodies
+    from ifcaudit.reading.placements import Placements
+    from ifcaudit.reading.profiles import Profiles
+    from ifcaudit.reading.relations import Relations
+    from ifcaudit.reading.slabs import read_slabs
+    from ifcaudit.reading.supports import read_supports
+
+    report = progress or _silent
+    report("opening the model")
+    model = open_model(path)
+    placements, relations = Placements(model), Relations(model)
+    profiles = Profiles(model)
+    bodies = Bodies(model, placements)
+    report("reading beams")
+    beams = read_beams(model, placements, bodies, profiles, relations)
+    report("reading slabs")
+    slabs = read_slabs(model, placements, bodies, relations)
+    report("reading columns and walls")
+    supports, support_findings = read_supports(model, bodies, relations)
+    return Building(
+        file_name=path.name,
+        schema=model.schema,
+        length_unit=model.length_unit,
+        beams=beams,
+        slabs=slabs,
+        supports=supports,
+        findings=(*_remarks(model, beams, slabs, supported=bool(supports)), *support_findings),
+    )
+
+
+def _remarks(model: Model, beams: Sequence[Beam], slabs: Sequence[Slab], *, supported: bool) -> tuple[str, ...]:
+    remarks = list(model.findings)
+    if not beams:
+        remarks.append("the model has no IfcBeam, and no IfcMember that could be a joist, rafter or purlin")
+    if not slabs:
+        remarks.append(
+            "the model has no slab or roof: no floor load reaches any beam; read the file that holds the floors"
+        )
+    if not supported:
+        remarks.append("the model has no column or wall; read the file that holds them, or state the supports")
+    unreadable = Counter(slab.unreadable for slab in slabs if slab.unreadable)
+    remarks.extend(f"{count} of {len(slabs)} slabs cannot be read: {reason}" for reason, count in unreadable.items())
+    return tuple(remarks)
