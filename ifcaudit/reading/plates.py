@@ -31,6 +31,8 @@ SAME_LEVEL = 0.03
 """Difference in level up to which faces of one slope are one face [m]."""
 LEAST_THICKNESS = 1e-3
 """Depth below which a fitted underside is no underside [m]."""
+STEP = 0.3
+"""Clear height between two bodies of one slab up to which they are one floor with a step or a cavity [m]."""
 SLIVER = 1e-4
 """Plan area below which a piece is drawing noise [m²]."""
 LEAST_SHARE = 0.05
@@ -379,23 +381,39 @@ def _level(
     return float(np.average(levels[near], weights=weight[near])), False
 
 
-def merge_plates(plates: Sequence[Plate]) -> tuple[Plate, ...]:
-    """Join plates of one slope, such as the layers or the side-by-side parts of one slab, into one plate each.
+def group_plates(plates: Sequence[Plate]) -> list[list[int]]:
+    """Group plates that make up one slab: of one slope, and touching in level; from the top downwards.
+
+    Returns:
+        The numbers of the plates in each group.
+    """
+    groups: list[list[int]] = []
+    for index in sorted(range(len(plates)), key=lambda number: -plates[number].top):
+        for group in groups:
+            if _same_slope(plates[index], plates[group[0]]) and any(_adjoin(plates[index], plates[k]) for k in group):
+                group.append(index)
+                break
+        else:
+            groups.append([index])
+    return groups
+
+
+def _same_slope(plate: Plate, other: Plate) -> bool:
+    return all(abs(a - b) < SAME_SLOPE for a, b in zip(plate.gradient, other.gradient, strict=True))
+
+
+def _adjoin(plate: Plate, other: Plate) -> bool:
+    rise = other.rise_to(plate.reference)
+    return plate.bottom <= other.top + rise + STEP and other.bottom + rise <= plate.top + STEP
+
+
+def merge_plates(group: Sequence[Plate]) -> Plate:
+    """Join plates of one slab, such as its layers or its parts side by side.
 
     The thickness of the joined plate is that of a solid plate of the same volume.
     """
-    groups: list[list[Plate]] = []
-    for plate in plates:
-        for group in groups:
-            if all(abs(a - b) < SAME_SLOPE for a, b in zip(plate.gradient, group[0].gradient, strict=True)):
-                group.append(plate)
-                break
-        else:
-            groups.append([plate])
-    return tuple(group[0] if len(group) == 1 else _merged(group) for group in groups)
-
-
-def _merged(group: Sequence[Plate]) -> Plate:
+    if len(group) == 1:
+        return group[0]
     plan = clean_area(shapely.union_all([plate.plan for plate in group], grid_size=1e-6))
     reference = centre_of(plan)
     tops = [plate.top + plate.rise_to(reference) for plate in group]

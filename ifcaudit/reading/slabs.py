@@ -18,12 +18,12 @@ from ifcaudit.reading.materials import MaterialLayer
 from ifcaudit.reading.placements import Placements
 from ifcaudit.reading.plates import (
     GEOMETRY_ERRORS,
-    SAME_SLOPE,
     UNCUT,
     Extrusion,
     Plate,
     centre_of,
     clean_area,
+    group_plates,
     merge_plates,
     plan_of_mesh,
     plates_of_extrusion,
@@ -120,18 +120,18 @@ def _has_body(context: _Context, element: Any) -> bool:
 
 def _read(context: _Context, element: Any) -> tuple[Slab, ...]:
     pieces, problems = _pieces(context, element)
-    plates = merge_plates([piece.plate for piece in pieces])
+    groups = [[pieces[k] for k in group] for group in group_plates([piece.plate for piece in pieces])]
     nature = _nature(context, element)
-    if not plates:
+    if not groups:
         return (_unreadable(context, element, nature, "; ".join(dict.fromkeys(problems))),)
     openings, opening_problems = _openings(context, element)
     slabs: list[Slab] = []
-    for plate in sorted(plates, key=lambda each: -each.plan.area):
+    merged = [(merge_plates([piece.plate for piece in group]), group) for group in groups]
+    for plate, group in sorted(merged, key=lambda pair: -pair[0].plan.area):
         net, opening_notes = _take_out(plate, openings)
         if net.is_empty:
             continue
-        of_plate = [piece for piece in pieces if _same_slope(piece.plate, plate)]
-        layers, layer_notes = _layers(context, element, plate, of_plate)
+        layers, layer_notes = _layers(context, element, plate, group)
         notes = (*plate.findings, *problems, *opening_problems, *opening_notes, *layer_notes, *nature.findings)
         slabs.append(_slab(context, element, len(slabs) + 1, plate, net, layers, nature, notes))
     if slabs:
@@ -255,10 +255,6 @@ def _plates(body: Prism | Mesh) -> tuple[Plate, ...]:
 def outline_of(body: Prism | Mesh) -> PlanArea:
     """Return the plan outline of a body."""
     return plan_of_mesh(body.vertices, body.faces) if isinstance(body, Mesh) else clean_area(plan_footprint(body))
-
-
-def _same_slope(plate: Plate, other: Plate) -> bool:
-    return all(abs(a - b) < SAME_SLOPE for a, b in zip(plate.gradient, other.gradient, strict=True))
 
 
 # ---- openings

@@ -8,7 +8,7 @@ import numpy as np
 import pytest
 from shapely import Polygon, box
 
-from ifcaudit.reading.plates import Extrusion, Plate, merge_plates, plates_of_extrusion, plates_of_mesh
+from ifcaudit.reading.plates import Extrusion, Plate, group_plates, merge_plates, plates_of_extrusion, plates_of_mesh
 
 FLAT = {"origin": (0.0, 0.0, 3.0), "x_axis": (1.0, 0.0, 0.0), "y_axis": (0.0, 1.0, 0.0)}
 PITCH = radians(30.0)
@@ -164,14 +164,21 @@ def test_an_inclined_clip_that_touches_is_reported_and_one_that_is_clear_is_not(
     assert clear.findings == ()
 
 
+def level_plate(bottom: float, depth: float) -> Plate:
+    """6 × 4 m."""
+    placed = FLAT | {"origin": (0.0, 0.0, bottom)}
+    return only(plates_of_extrusion(Extrusion(profile=box(0, 0, 6, 4), sweep=(0.0, 0.0, depth), **placed)))
+
+
 def test_layers_drawn_as_bodies_add_up_and_a_body_drawn_twice_counts_once():
     """0.05 m on 0.20 m is 0.25 m; the same body twice is still 0.20 m."""
-    lower = only(plates_of_extrusion(Extrusion(profile=box(0, 0, 6, 4), sweep=(0.0, 0.0, 0.2), **FLAT)))
-    upper = only(
-        plates_of_extrusion(
-            Extrusion(profile=box(0, 0, 6, 4), sweep=(0.0, 0.0, 0.05), **(FLAT | {"origin": (0.0, 0.0, 3.2)}))
-        )
-    )
-    both = only(merge_plates([lower, upper]))
+    lower, upper = level_plate(3.0, 0.2), level_plate(3.2, 0.05)
+    assert group_plates([lower, upper]) == [[1, 0]]
+    both = merge_plates([lower, upper])
     assert (both.plan.area, both.thickness, both.top, both.bottom) == pytest.approx((24.0, 0.25, 3.25, 3.0))
-    assert only(merge_plates([lower, lower])).thickness == pytest.approx(0.2)
+    assert merge_plates([lower, lower]).thickness == pytest.approx(0.2)
+
+
+def test_bodies_a_storey_apart_stay_two_plates():
+    """One element that holds the floors at 3 and at 6 m is not one floor 3.2 m thick."""
+    assert group_plates([level_plate(3.0, 0.2), level_plate(6.0, 0.2)]) == [[1], [0]]
