@@ -105,8 +105,10 @@ def _relation_with(number: int, values: list[bytes], definitions: list[int]) -> 
 
 def _forget(text: StepText, counts: Counter[int], number: int, replacement: bytes) -> None:
     entry = text.index[number]
-    counts.subtract(references(text.data[entry.start : entry.end]))
-    counts.update(references(replacement))
+    for item in references(text.data[entry.start : entry.end]):
+        counts[item] -= 1
+    for item in references(replacement):
+        counts[item] += 1
 
 
 def _remove(
@@ -117,10 +119,14 @@ def _remove(
     waiting = list(free)
     while waiting:
         number = waiting.pop()
+        if number in changes:
+            continue
         entry = text.index[number]
         statement = text.data[entry.start : entry.end]
         _forget(text, counts, number, b"")
         changes[number] = b""
+        if statement.count(b"#") == 1:
+            continue  # most properties refer to nothing
         in_set = entry.keyword == _SET
         for item in references(arguments(statement)[4] if in_set else statement.partition(b"=")[2]):
             if item not in text.index or item in changes:

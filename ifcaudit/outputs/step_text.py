@@ -21,6 +21,7 @@ _STATEMENT = re.compile(
 )
 _STRINGS_AND_COMMENTS = re.compile(_STRING + rb"|" + _COMMENT)
 _NUMBERED = re.compile(rb";\s*#(\d+)\s*=")
+_DEFINITION = re.compile(rb"#(\d+)\s*=")
 _REFERENCE = re.compile(rb"#(\d+)")
 _ARGUMENT = re.compile(rb"[^,()'/]++|" + _STRING + rb"|" + _COMMENT + rb"|[,()/]")
 _DATA = re.compile(rb";" + _GAP + rb"DATA\s*(?:\([^;]*\))?\s*;")
@@ -72,6 +73,8 @@ def references(text: bytes) -> list[int]:
         >>> references(b"('see #9',#1,(#2,#1))")
         [1, 2, 1]
     """
+    if text.count(b"#") == 1 and (alone := _DEFINITION.match(text)):
+        return [int(alone[1])]  # an instance that refers to nothing needs no closer look
     if b"'" in text or b"/*" in text:
         text = _STRINGS_AND_COMMENTS.sub(b"", text)
     return [int(number) for number in _REFERENCE.findall(text)]
@@ -147,9 +150,9 @@ class StepText:
             if match.start() != position:
                 raise NotAppendableError(f"text at byte {position} is no statement")
             position = match.end()
-            if match["number"] is not None:
-                start, end = match.span("whole")
-                found[int(match["number"])] = Statement(match["keyword"].upper(), start, end)
+            whole, number, keyword = match.group(1, 2, 3)
+            if number is not None:
+                found[int(number)] = Statement(keyword.upper(), position - len(whole), position)
         return found
 
     def statement(self, number: int) -> bytes:
