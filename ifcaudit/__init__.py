@@ -7,6 +7,7 @@ or the local building code.
 from __future__ import annotations
 
 from importlib import import_module
+from importlib.metadata import version
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
@@ -15,7 +16,8 @@ if TYPE_CHECKING:
     from ifcaudit.pipeline import audit
     from ifcaudit.rulebook.loader import load_rules
 
-__version__ = "0.1.0"
+    __version__: str
+
 __all__ = ["Audit", "AuditError", "__version__", "audit", "load_rules"]
 
 _HOMES = {
@@ -28,6 +30,8 @@ _HOMES = {
 
 def __getattr__(name: str) -> Any:
     """Load a public name when it is first used, so that ``import ifcaudit`` stays quick."""
+    if name == "__version__":
+        return version("ifcaudit")
     if name not in _HOMES:
         raise AttributeError(f"module 'ifcaudit' has no attribute {name!r}")
     return getattr(import_module(_HOMES[name]), name)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import argparse
 import sys
 from collections.abc import Sequence
+from importlib.metadata import version
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -46,9 +47,7 @@ def _parser() -> argparse.ArgumentParser:
         epilog=_EPILOG,
         formatter_class=argparse.RawDescriptionHelpFormatter,
     )
-    from ifcaudit import __version__
-
-    parser.add_argument("--version", action="version", version=f"ifcaudit {__version__}")
+    parser.add_argument("--version", action="version", version=f"ifcaudit {version('ifcaudit')}")
     commands = parser.add_subparsers(dest="command", required=True, metavar="COMMAND")
     audit = commands.add_parser(
         "audit",

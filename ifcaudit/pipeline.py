@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from functools import cache
+from importlib.metadata import version
 from os import PathLike
 from pathlib import Path
 
-from ifcaudit import __version__, assembly
+from ifcaudit import assembly
 from ifcaudit.assembly import Judged
 from ifcaudit.checks.interface import CheckInput
 from ifcaudit.checks.verdict import check_beams
@@ -85,7 +86,7 @@ def audit(
         assumptions=assembly.count_assumptions(results),
         findings=(*building.findings, *findings),
         cautions=assembly.CAUTIONS,
-        version=__version__,
+        version=version("ifcaudit"),
     )
 
 

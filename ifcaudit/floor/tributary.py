@@ -244,7 +244,7 @@ class _Trapezoids:
     def _cut(self, stations: FloatArray) -> list[tuple[float, float, tuple[float, ...], int, int]]:
         """Pieces as (from, to, (lower from, lower to, upper from, upper to), lower edge, upper edge)."""
         low, high = self._s.min(axis=1), self._s.max(axis=1)
-        pieces = []
+        pieces: list[tuple[float, float, tuple[float, ...], int, int]] = []
         for first, last in zip(stations[:-1].tolist(), stations[1:].tolist(), strict=True):
             crossing = np.flatnonzero((low <= first + SHORTEST) & (high >= last - SHORTEST) & (high - low > SHORTEST))
             heights = [(self._height(edge, first), self._height(edge, last), int(edge)) for edge in crossing]

@@ -37,6 +37,8 @@ def two_way_parts(panel: Panel) -> list[tuple[Polygon, int, Vector2]] | None:
     if held < LEAST_HELD_PERIMETER * polygon.length:
         return None
     sides = _sides(panel)
+    if any(max(holders) < 0 for _, holders in sides):
+        return None
     corners = [tuple(point) for point in shapely.get_coordinates(polygon.exterior)[:-1].tolist()]
     planes = [_inside(edges[0][0], edges[-1][1]) for edges, _ in sides]
     parts = []
@@ -51,7 +53,7 @@ def two_way_parts(panel: Panel) -> list[tuple[Polygon, int, Vector2]] | None:
 
 
 def _is_compact(polygon: Polygon) -> bool:
-    box = shapely.get_coordinates(polygon.minimum_rotated_rectangle.exterior)
+    box = shapely.get_coordinates(polygon.minimum_rotated_rectangle)
     first, second = (hypot(*(box[index + 1] - box[index])) for index in (0, 1))
     return bool(max(first, second) <= LARGEST_RATIO * (1.0 + 1e-6) * min(first, second))
 
@@ -122,7 +124,9 @@ def _by_holder(
     parts = []
     along = (normal[1], -normal[0])
     runs: list[tuple[Point2, Point2, int]] = []
-    for (start, end), holder in zip(edges, holders, strict=True):
+    first_held = next(holder for holder in holders if holder >= 0)
+    for (start, end), found in zip(edges, holders, strict=True):
+        holder = found if found >= 0 or runs else first_held
         if runs and (runs[-1][2] == holder or holder < 0):
             runs[-1] = (runs[-1][0], end, runs[-1][2])
         else:
