@@ -37,7 +37,7 @@ SLIVER = 1e-4
 """Plan area below which a piece is drawing noise [m²]."""
 LEAST_SHARE = 0.05
 """Part of the plan below which a plane of another slope is taken into the one nearest in slope."""
-UNCUT = "it is cut by a plane that is not vertical; the uncut outline is used"
+UNCUT = "it is cut by a plane or solid that is not followed; the uncut outline is used"
 """Finding where a cut was not followed."""
 MOST_PLANES = 24
 """More planes than this are a curved surface, for which one mean plane is used."""
@@ -127,7 +127,7 @@ def plates_of_extrusion(solid: Extrusion) -> tuple[Plate, ...]:
     if abs(normal[2]) < STEEPEST or along < 1e-6:
         vertices, triangles = _mesh_of_extrusion(solid)
         plates = plates_of_mesh(vertices, triangles)
-        return tuple(replace(plate, findings=(*plate.findings, UNCUT)) for plate in plates) if solid.clips else plates
+        return tuple(with_finding(plate, UNCUT) for plate in plates) if solid.clips else plates
     matrix = np.column_stack([solid.x_axis, solid.y_axis])
     middle = np.asarray(solid.origin) + 0.5 * sweep
     plan = clean_area(shapely.transform(solid.profile, lambda points: points @ matrix[:2].T + middle[:2]))
@@ -163,9 +163,9 @@ def _clip(plate: Plate, point: Point3, away: Point3) -> Plate:
         centre = centre_of(plan) if not plan.is_empty else plate.reference
         rise = plate.rise_to(centre)
         return replace(plate, plan=plan, reference=centre, top=plate.top + rise, bottom=plate.bottom + rise)
-    if not _cuts(plate, point, away):
+    if not touches(plate, point, away):
         return plate
-    return replace(plate, findings=(*plate.findings, UNCUT))
+    return with_finding(plate, UNCUT)
 
 
 def _half_plane(area: PlanArea, point: Point3, away: Point2) -> Polygon:
@@ -179,7 +179,13 @@ def _half_plane(area: PlanArea, point: Point3, away: Point2) -> Polygon:
     )
 
 
-def _cuts(plate: Plate, point: Point3, away: Point3) -> bool:
+def with_finding(plate: Plate, note: str) -> Plate:
+    """Add a remark to a plate, once."""
+    return plate if note in plate.findings else replace(plate, findings=(*plate.findings, note))
+
+
+def touches(plate: Plate, point: Point3, away: Point3) -> bool:
+    """Tell whether a half-space, beyond ``point`` towards ``away``, reaches into a plate."""
     corners = shapely.get_coordinates(plate.plan)
     for level in (plate.top, plate.bottom):
         heights = level + (corners - plate.reference) @ np.asarray(plate.gradient)

@@ -109,7 +109,7 @@ class PropertyReader:
         return tuple(found)
 
     def _read(self, entity: Any) -> tuple[PropertyKind, str]:
-        name = entity[0]  # Name is the first attribute of every IfcProperty in every schema
+        name = entity.get_argument(0)  # Name is the first attribute of every IfcProperty in every schema
         kind = property_kind(name) if name else PropertyKind.OTHER
         if kind in {PropertyKind.OTHER, PropertyKind.DENSITY}:
             return kind, ""

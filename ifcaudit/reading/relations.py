@@ -168,7 +168,7 @@ class Relations:
         first = self._model.position(relation_class, one)
         second = self._model.position(relation_class, many)
         for relation in self._model.file.by_type(relation_class):
-            left, right = relation[first], relation[second]
+            left, right = relation.get_argument(first), relation.get_argument(second)
             if left is not None and right is not None:
                 yield left, right
 

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from math import hypot
 from typing import Any
 
@@ -12,7 +12,7 @@ from shapely import Polygon
 
 from ifcaudit.model.building import Layer, PlanArea, Slab
 from ifcaudit.model.material import MaterialText
-from ifcaudit.reading.bodies import Bodies, Mesh, Prism, Unreadable, plan_footprint, z_range
+from ifcaudit.reading.bodies import Bodies, HalfSpace, Mesh, Prism, Unreadable, plan_footprint, z_range
 from ifcaudit.reading.ifc_file import Model
 from ifcaudit.reading.materials import MaterialLayer
 from ifcaudit.reading.placements import Placements
@@ -28,8 +28,9 @@ from ifcaudit.reading.plates import (
     plan_of_mesh,
     plates_of_extrusion,
     plates_of_mesh,
+    touches,
+    with_finding,
 )
-from ifcaudit.reading.profiles import profile_polygon
 from ifcaudit.reading.relations import Relations
 from ifcaudit.reading.slab_names import floor_unit_name, on_grade_name, roof_name
 
@@ -235,21 +236,30 @@ def _own_pieces(context: _Context, element: Any) -> tuple[list[_Piece], list[str
 
 
 def _plates(body: Prism | Mesh) -> tuple[Plate, ...]:
+    unfollowed: list[HalfSpace] = []
     if isinstance(body, Mesh):
-        return plates_of_mesh(body.vertices, body.faces)
-    plates = plates_of_extrusion(
-        Extrusion(
-            profile=profile_polygon(body.profile),
-            origin=body.transform.origin,
-            x_axis=body.transform.x,
-            y_axis=body.transform.y,
-            sweep=(body.direction[0] * body.depth, body.direction[1] * body.depth, body.direction[2] * body.depth),
-            clips=tuple((clip.point, clip.normal) for clip in body.clips),
-        )
+        plates = plates_of_mesh(body.vertices, body.faces)
+    else:
+        plates = plates_of_extrusion(_extrusion(body))
+        unfollowed = [clip for clip in body.clips if clip.bounded]
+    return tuple(
+        with_finding(plate, UNCUT)
+        if body.cut or any(touches(plate, clip.point, clip.normal) for clip in unfollowed)
+        else plate
+        for plate in plates
     )
-    if not body.cut:
-        return plates
-    return tuple(replace(plate, findings=tuple(dict.fromkeys((*plate.findings, UNCUT)))) for plate in plates)
+
+
+def _extrusion(body: Prism) -> Extrusion:
+    direction, depth = body.direction, body.depth
+    return Extrusion(
+        profile=body.outline,
+        origin=body.transform.origin,
+        x_axis=body.transform.x,
+        y_axis=body.transform.y,
+        sweep=(direction[0] * depth, direction[1] * depth, direction[2] * depth),
+        clips=tuple((clip.point, clip.normal) for clip in body.clips if not clip.bounded),
+    )
 
 
 def outline_of(body: Prism | Mesh) -> PlanArea:

@@ -6,6 +6,7 @@ from math import hypot
 from typing import Any
 
 import shapely
+from shapely import MultiPoint
 
 from ifcaudit.model.building import PlanArea, VerticalKind, VerticalSupport
 from ifcaudit.model.section import Point2
@@ -114,7 +115,7 @@ def _outline(block: Prism | Mesh, kind: VerticalKind) -> PlanArea:
     if isinstance(block, Prism):
         return clean_area(plan_footprint(block))
     if kind is VerticalKind.COLUMN:
-        return clean_area(shapely.multipoints(block.vertices[:, :2]).convex_hull)
+        return clean_area(MultiPoint(block.vertices[:, :2]).convex_hull)
     return plan_of_mesh(block.vertices, block.faces)
 
 

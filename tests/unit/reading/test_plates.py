@@ -158,7 +158,7 @@ def test_an_inclined_clip_that_touches_is_reported_and_one_that_is_clear_is_not(
     """What a sloping cut leaves is not followed; the outline is kept whole, and the engineer is told."""
     solid = {"profile": box(0, 0, 6, 4), "sweep": (0.0, 0.0, 0.2), **FLAT}
     touching = only(plates_of_extrusion(Extrusion(clips=(((5.0, 0.0, 3.1), (1.0, 0.0, 1.0)),), **solid)))
-    assert touching.findings == ("it is cut by a plane that is not vertical; the uncut outline is used",)
+    assert touching.findings == ("it is cut by a plane or solid that is not followed; the uncut outline is used",)
     assert touching.plan.area == pytest.approx(24.0)
     clear = only(plates_of_extrusion(Extrusion(clips=(((5.0, 0.0, 9.1), (0.0, 0.1, 1.0)),), **solid)))
     assert clear.findings == ()

@@ -134,6 +134,32 @@ def test_an_opening_as_large_as_the_slab_leaves_an_unreadable_slab(builder, tmp_
     assert found.unreadable == "its openings leave nothing of its outline; export it with a closed solid body"
 
 
+@pytest.mark.parametrize(("agreement", "area"), [(True, 4.0), (False, 20.0)])
+def test_a_slab_clipped_by_a_vertical_half_space_is_cut_in_plan(builder, tmp_path, agreement, area):
+    """6 × 4 m cut at x = 2 of -3 to 3: 1 × 4 or 5 × 4 m stay; with agreement the half-space lies behind its normal."""
+    surface = builder.file.create_entity("IfcPlane", Position=builder.axes((2, 0, 0), z=(1, 0, 0), x=(0, 1, 0)))
+    half = builder.file.create_entity("IfcHalfSpaceSolid", BaseSurface=surface, AgreementFlag=agreement)
+    solid = builder.extrusion(builder.rectangle(6, 4), 0.2)
+    clipped = builder.file.create_entity(
+        "IfcBooleanClippingResult", Operator="DIFFERENCE", FirstOperand=solid, SecondOperand=half
+    )
+    builder.element("IfcSlab", clipped)
+    slab = only(slabs_of(builder, tmp_path))
+    assert slab.plan.area == pytest.approx(area)
+    assert slab.findings == ()
+
+
+def test_a_slab_from_which_a_solid_is_taken_is_kept_whole_and_reported(builder, tmp_path):
+    """What a boolean with another solid leaves is not followed."""
+    solid = builder.extrusion(builder.rectangle(6, 4), 0.2)
+    tool = builder.extrusion(builder.rectangle(1, 1), 1.0)
+    left = builder.file.create_entity("IfcBooleanResult", Operator="DIFFERENCE", FirstOperand=solid, SecondOperand=tool)
+    builder.element("IfcSlab", left)
+    slab = only(slabs_of(builder, tmp_path))
+    assert slab.plan.area == pytest.approx(24.0)
+    assert slab.findings == ("it is cut by a plane or solid that is not followed; the uncut outline is used",)
+
+
 def test_a_roof_extruded_vertically_from_its_slope_has_plan_area_gradient_and_true_thickness(builder, tmp_path):
     """6 × 5 m at 30°, vertical depth 0.231: plan 6 × 5 cos 30°, slope tan 30°, thickness 0.231 cos 30° = 0.200."""
     position = builder.axes((3, 2.5 * cos(PITCH), 2.5 * sin(PITCH)), z=(0, -sin(PITCH), cos(PITCH)), x=(1, 0, 0))
