@@ -31,6 +31,9 @@ _TABLE_UNITS = {
     "si": {"ratio": "", "length": "m", "area": "m2", "force": "kN", "moment": "kNm", "deflection": "mm"},
     "us": {"ratio": "", "length": "ft", "area": "ft2", "force": "kip", "moment": "kip-ft", "deflection": "in"},
 }
+_ONE_UNIT = r"[A-Za-zµ°_]+\.?(?:\s*(?:\^|\*\*)?\s*-?\d)?"
+_UNIT = re.compile(rf"{_ONE_UNIT}(?:\s*[*/·-]?\s*{_ONE_UNIT})*")
+_SPELLINGS = {unit.lower(): unit for unit in ("psf", "ksf", "psi", "ksi", "plf", "klf", "pcf", "kPa", "MPa", "kN/m2")}
 _NUMBER_AND_UNIT = re.compile(r"^\s*([-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?)\s*(.*?)\s*$")
 _TRAILING_EXPONENT = re.compile(r"([A-Za-z])\s*\^?\s*([2346])(?![\d.])")
 
@@ -55,8 +58,9 @@ def _registry() -> pint.UnitRegistry[Any]:
 
 def _unit_text(text: str) -> str:
     """Write a unit the way the units library reads it: ``kN/m2`` and ``kN/m²`` become ``kN/m**2``."""
+    text = _SPELLINGS.get(text.lower(), text)
     text = text.replace("²", "2").replace("³", "3").replace("⁴", "4").replace("·", "*").replace("kip-ft", "kip*ft")
-    text = re.sub(r"\blbs?\s*/\s*(?:ft2|sq\.? ?ft)", "psf", text)
+    text = re.sub(r"\blbs?\s*/\s*(?:ft\s*(?:\^|\*\*)?\s*2|sq\.? ?ft)", "psf", text)
     return _TRAILING_EXPONENT.sub(r"\1**\2", text)
 
 
@@ -72,9 +76,11 @@ def convert(value: float, unit: str, to: str) -> float:
     """
     import pint
 
+    if not all(_UNIT.fullmatch(_unit_text(text)) for text in (unit, to) if text):
+        raise QuantityError(f'"{unit}" cannot be converted to {to}: it is not written as a unit')
     try:
         return float(_registry().Quantity(value, _unit_text(unit)).to(_unit_text(to)).magnitude)
-    except (pint.PintError, AttributeError, TypeError, ValueError, SyntaxError) as error:
+    except (pint.PintError, AttributeError, TypeError, ValueError, SyntaxError, AssertionError) as error:
         raise QuantityError(f'"{unit}" cannot be converted to {to}: {error}') from error
 
 
@@ -82,11 +88,14 @@ def convert(value: float, unit: str, to: str) -> float:
 def factor(unit: str, dimension: str) -> float:
     """Return the factor from a unit to SI for a dimension named in this module.
 
+    Raises:
+        QuantityError: The unit is unknown, or measures something else.
+
     Example:
         >>> factor("ft", "length")
         0.3048
     """
-    return convert(1.0, unit, _DIMENSION_UNITS[dimension])
+    return float(f"{convert(1.0, unit, _DIMENSION_UNITS[dimension]):.15g}")  # the last bit is rounding
 
 
 def parse_quantity(text: str, dimension: str, what: str = "quantity") -> float:
@@ -110,10 +119,12 @@ def parse_quantity(text: str, dimension: str, what: str = "quantity") -> float:
         missing = "no number" if not match else "no unit"
         raise QuantityError(f'{what} "{text}": {missing} found; write a {dimension} such as {examples}')
     number, unit = float(match.group(1)), match.group(2)
+    if unit.startswith(","):
+        raise QuantityError(f'{what} "{text}": write the number with a decimal point and no thousands separators')
     if not math.isfinite(number):
         raise QuantityError(f'{what} "{text}": the number is not finite; write a {dimension} such as {examples}')
     try:
-        return convert(number, unit, _DIMENSION_UNITS[dimension])
+        return number * factor(unit, dimension)
     except QuantityError:
         raise QuantityError(
             f'{what} "{text}": "{unit}" is not a unit of {dimension}; write a {dimension} such as {examples}'
