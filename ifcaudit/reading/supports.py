@@ -46,17 +46,23 @@ def read_supports(
                 supports.append((element.id(), support))
             else:
                 name = str(model.get(element, "Name") or "").strip() or "without a name"
-                unreadable.append(f"{kind} {name} ({model.get(element, 'GlobalId')})")
+                reason = _why(bodies, element)
+                unreadable.append(f"{kind} {name} ({model.get(element, 'GlobalId')}): no readable body ({reason})")
     ordered = sorted(supports, key=lambda pair: pair[0])
     return tuple(support for _, support in ordered), _report(unreadable)
 
 
 def _report(unreadable: list[str]) -> tuple[str, ...]:
     """One remark per unreadable support; the rest of a long list as one."""
-    consequence = "no readable body; a beam end that rests on it is not checked; export it with a solid body"
-    named = [f"{each}: {consequence}" for each in unreadable[:_FEW]]
+    consequence = "a beam end that rests on it is not checked; export it with a solid body"
+    named = [f"{each}; {consequence}" for each in unreadable[:_FEW]]
     rest = len(unreadable) - _FEW
     return (*named, f"{rest} more columns and walls have no readable body") if rest > 0 else tuple(named)
+
+
+def _why(bodies: Bodies, element: Any) -> str:
+    reasons = (body.reason for body in bodies.of(element) if isinstance(body, Unreadable))
+    return "; ".join(dict.fromkeys(reasons)) or "its solid encloses no area"
 
 
 def _part_of_support(relations: Relations, element: Any) -> bool:

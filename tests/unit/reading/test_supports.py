@@ -96,7 +96,9 @@ def test_a_support_without_a_body_is_reported(builder, tmp_path):
     supports, findings = read(builder, tmp_path)
     assert supports == ()
     consequence = "a beam end that rests on it is not checked; export it with a solid body"
-    assert findings == (f"column C7 ({column.GlobalId}): no readable body; {consequence}",)
+    assert findings == (
+        f"column C7 ({column.GlobalId}): no readable body (it has no body in the model); {consequence}",
+    )
 
 
 def test_many_unreadable_supports_are_counted(builder, tmp_path):
