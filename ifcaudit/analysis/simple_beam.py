@@ -1,7 +1,8 @@
 """Simply supported beams under piecewise-linear and point loads, exact, many at once.
 
 Loads become Macaulay terms ``c <x - a>^n``: a line load that begins at a station is a step (n = 0) and a ramp (n = 1),
-its end takes both away again, and a point load is an impulse (n = -1). Shear, moment and deflection follow by raising n:
+its end takes both away again, and a point load is an impulse (n = -1). Shear, moment and deflection follow by
+raising n:
 
     V(x) = R - sum c <x - a>^(n+1) / (n+1)!
     M(x) = R x - sum c <x - a>^(n+2) / (n+2)!
@@ -104,7 +105,7 @@ def _integral(packed: PackedLoads, weights: FloatArray, positions: FloatArray, t
     inside = np.where(reach >= 0.0, reach, 0.0)
     exponent = power[:, None, :, None]
     shape = np.where(exponent == 0, (reach >= 0.0).astype(np.float64), inside**exponent) / _FACTORIAL[exponent]
-    return np.einsum("bct,bctp->bcp", weights, shape)
+    return np.asarray(np.einsum("bct,bctp->bcp", weights, shape))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -188,7 +189,7 @@ def _shear_candidates(
 def _jumps(packed: PackedLoads, weights: FloatArray, positions: FloatArray) -> FloatArray:
     """Sum of the point loads standing exactly at each position."""
     at = (positions[:, :, None, :] == packed.stations[:, None, :, None]) & (packed.orders == -1)[:, None, :, None]
-    return np.einsum("bct,bctp->bcp", weights, at.astype(np.float64))
+    return np.asarray(np.einsum("bct,bctp->bcp", weights, at.astype(np.float64)))
 
 
 def _moment_candidates(packed: PackedLoads, weights: FloatArray, left: FloatArray) -> tuple[FloatArray, FloatArray]:

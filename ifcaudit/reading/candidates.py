@@ -31,7 +31,9 @@ ROLLED = {
     SectionKind.ROUND_HOLLOW,
     SectionKind.TEE,
 }
-"""Shapes that no fitting has; a word in the name does not set them aside."""
+"""Shapes that no fitting has, above the size of a railing: a word in the name does not set them aside."""
+LARGEST_RAILING = 0.08
+"""Depth up to which a tube may be a railing, so that its name decides [m]."""
 
 
 def set_aside_reason(
@@ -57,9 +59,10 @@ def set_aside_reason(
     """
     length = (plan_length**2 + rise**2) ** 0.5
     rolled = profile is not None and profile.kind in ROLLED
+    named = not rolled or max(height, width) <= LARGEST_RAILING
     return _by_geometry(
         length, degrees(atan2(abs(rise), plan_length)), height, width, rafter=rafter, rolled=rolled
-    ) or ("" if rolled else _by_name(texts))
+    ) or (_by_name(texts) if named else "")
 
 
 def _by_geometry(length: float, slope: float, height: float, width: float, *, rafter: bool, rolled: bool) -> str:

@@ -126,8 +126,8 @@ def _read(path: Path, name: str) -> _Files:
     occupancies = _file(schema.OccupancyFile, files.get("occupancies"), problems)
     combinations = _file(schema.CombinationFile, files.get("combinations"), problems)
     catalogue = _catalogue(files.get("sections"), problems)
-    if standard and occupancies:
-        _check_occupancies(standard, occupancies, origin, problems)
+    if occupancies:
+        _check_occupancies(table.get("loads"), occupancies, origin, problems)
     raise_all(name, problems)
     assert standard and materials and occupancies and combinations  # noqa: S101, PT018 — else raised above
     return _Files(
@@ -176,15 +176,15 @@ def _catalogue(paths: object, problems: list[Problem]) -> Catalogue:
 
 
 def _check_occupancies(
-    standard: schema.StandardFile,
+    loads: object,
     occupancies: schema.OccupancyFile,
     origin: dict[tuple[str, ...], Path],
     problems: list[Problem],
 ) -> None:
-    for key in schema.Loads.model_fields:
-        load = getattr(standard.loads, key)
-        name = load.occupancy if isinstance(load, schema.Load) else None
-        if name is not None and name not in occupancies.occupancies:
+    """Look up every occupancy that a load names, also where other keys do not validate."""
+    for key, load in loads.items() if isinstance(loads, dict) else ():
+        name = load.get("occupancy") if isinstance(load, dict) else None
+        if isinstance(name, str) and name not in occupancies.occupancies:
             problems.append(
                 Problem(
                     file=shown(origin_of(("loads", key), origin)),
