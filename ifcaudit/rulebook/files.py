@@ -150,11 +150,10 @@ def _resolve_references(table: dict[str, Any], file: Path, problems: list[Proble
     if not isinstance(references, dict):
         return
     for kind, names in references.items():
-        if kind not in {"combinations", "materials", "occupancies", "sections"}:
-            continue
-        listed = names if isinstance(names, list) else [names]
-        resolved = [_resolve(name, kind, file, problems) for name in listed]
-        references[kind] = resolved if isinstance(names, list) else resolved[0]
+        if kind == "sections" and isinstance(names, list):
+            references[kind] = [_resolve(name, kind, file, problems) for name in names]
+        elif kind in {"combinations", "materials", "occupancies"}:
+            references[kind] = _resolve(names, kind, file, problems)
 
 
 def _resolve(name: Any, kind: str, file: Path, problems: list[Problem]) -> Any:

@@ -69,7 +69,8 @@ def test_several_grades_give_the_weakest() -> None:
         (text("staal"), "W", "A992", 'the model says "staal", no grade known to the rules', "W sections"),
         (text("Solid"), "HP", "A572-50", 'the model says "Solid", no grade known to the rules', "HP sections"),
         (text(), "HSS", "A500-C", "the model names no material", "HSS sections"),
-        (text("Stahl"), "", "A36", 'the model says "Stahl", no grade known to the rules', "sections outside the catalogue"),
+        (text("Stahl"), "", "A36", 'the model says "Stahl", no grade known to the rules',
+         "sections outside the catalogue"),
     ],
 )  # fmt: skip
 def test_default_grade_is_an_assumption(
@@ -142,6 +143,8 @@ def test_a_steel_shape_without_a_material_is_steel() -> None:
         ("béton armé", "concrete"), ("chape ciment", "screed"), ("calcestruzzo", "concrete"), ("hormigón", "concrete"),
         ("luchtspouw", "air"), ("Air", "air"), ("Metal Deck", "steel deck"), ("Masonry Block", "masonry"),
         ("Ceiling tile", "ceiling tile"), ("Roof Tile", "tile"), ("hout", "timber"), ("Glaswolle", "insulation"),
+        ("Kanaalplaat 200", "hollow core units"), ("Structure, Steel Bar Joist Layer", "joists with space"),
+        ("Staalplaatbetonvloer", "concrete"), ("Concrete Masonry Units", "masonry"),
     ],
 )  # fmt: skip
 def test_layers_by_a_word_in_their_name(name: str, kind: str) -> None:

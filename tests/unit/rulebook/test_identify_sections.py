@@ -186,7 +186,8 @@ def test_named_section_drawn_as_a_solid_envelope() -> None:
             (),
             (
                 "no section properties: the profile (I-shape 300x150 mm) gives no usable thickness or outline, "
-                "and its name is not in this rule set's catalogue: complete the profile in the model, or name its section"
+                "and its name is not in this rule set's catalogue: "
+                "complete the profile in the model, or name its section"
             ),
         ),
         (
@@ -194,7 +195,8 @@ def test_named_section_drawn_as_a_solid_envelope() -> None:
             (),
             (
                 "no section properties: the profile (other 300x150 mm) gives no usable thickness or outline, "
-                "and its name is not in this rule set's catalogue: complete the profile in the model, or name its section"
+                "and its name is not in this rule set's catalogue: "
+                "complete the profile in the model, or name its section"
             ),
         ),
     ],

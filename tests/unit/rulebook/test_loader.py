@@ -263,6 +263,17 @@ def test_unknown_occupancy(tmp_path: Path) -> None:
             'deflection.floor_live_divisor = { value = 0, unit = "ratio", clause = "c" }',
             "deflection.floor_live_divisor.value: found 0; allowed: more than 0",
         ),
+        ("loads = 3", "loads: found 3; allowed: a table"),
+        ('files.sections = "aisc_w"', 'files.sections: found "aisc_w"; allowed: a list in brackets'),
+        ("editions = [1]", "editions[1]: found 1; allowed: text in quotes"),
+        (
+            "loads.floor_live.colour = 1",
+            "loads.floor_live.colour: found an unknown key; allowed: occupancy, value, unit, clause",
+        ),
+        (
+            'resistance_factors.phi_b = { value = 0.9, unit = "ratio", clause = "c", note = "n" }',
+            "resistance_factors.phi_b.note: found an unknown key; allowed: value, unit, clause",
+        ),
         ("editions = []", "editions: found a list of 0; allowed: at least 1 items"),
         ('title = ""', 'title: found ""; allowed: a text of at least 1 characters'),
         (
@@ -381,6 +392,26 @@ def test_bad_headings_of_a_section_file(tmp_path: Path, text: str, message: str)
     own.write_text(text, encoding="utf-8")
     path = rule_file(tmp_path, 'extends = "us-lrfd"\nfiles.sections = ["own"]\n')
     assert problems(path)[1] == f"  {own}: {message}"
+
+
+def test_a_file_that_is_no_text(tmp_path: Path) -> None:
+    """A binary file is refused, not decoded by guess."""
+    path = tmp_path / "binary.toml"
+    path.write_bytes(b"\xff\xfe\x00")
+    assert problems(path)[1:] == [
+        (
+            f"  {path}: found 'utf-8' codec can't decode byte 0xff in position 0: invalid start byte; "
+            "allowed: a readable TOML file in UTF-8"
+        )
+    ]
+
+
+def test_a_series_in_two_files(tmp_path: Path) -> None:
+    """A series may come from one file only."""
+    path = rule_file(tmp_path, 'extends = "us-lrfd"\nfiles.sections = ["aisc_w", "aisc_w"]\n')
+    assert problems(path)[1:] == [
+        '  rules/sections/aisc_w.csv: # series: found "W", which another file has; allowed: each series in one file'
+    ]
 
 
 def test_a_grade_that_the_file_does_not_hold(tmp_path: Path) -> None:
