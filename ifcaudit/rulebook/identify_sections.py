@@ -148,12 +148,12 @@ def _by_name(found: tuple[Section, str] | None, texts: tuple[str, ...], index: _
     unknown = names.unknown_designation(texts)
     if unknown:
         problem = (
-            f"named {unknown}, which is not in this rule set's catalogue ({series}), and no profile is drawn: "
+            f"named {unknown}, which is not in this rule set's catalogue ({series}), and no profile could be read: "
             "give the beam a profile in the model, or use a rule set with that series"
         )
     else:
         problem = (
-            f"no section: the model draws no profile and names none of this rule set's catalogue ({series}): "
+            f"no section: no profile could be read, and no name is in this rule set's catalogue ({series}): "
             "give the beam a profile in the model, or name its type after its section"
         )
     return SectionMatch(section=None, problem=problem)

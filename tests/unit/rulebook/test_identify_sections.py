@@ -153,7 +153,7 @@ def test_named_section_drawn_as_a_solid_envelope() -> None:
             None,
             ("IPE300",),
             (
-                f"named IPE300, which is not in this rule set's catalogue ({SERIES}), and no profile is drawn: "
+                f"named IPE300, which is not in this rule set's catalogue ({SERIES}), and no profile could be read: "
                 "give the beam a profile in the model, or use a rule set with that series"
             ),
         ),
@@ -161,7 +161,7 @@ def test_named_section_drawn_as_a_solid_envelope() -> None:
             None,
             ("LIGGER",),
             (
-                f"no section: the model draws no profile and names none of this rule set's catalogue ({SERIES}): "
+                f"no section: no profile could be read, and no name is in this rule set's catalogue ({SERIES}): "
                 "give the beam a profile in the model, or name its type after its section"
             ),
         ),
