@@ -48,6 +48,8 @@ def stack_slabs(slabs: Sequence[Slab], mass_per_area: Sequence[float]) -> tuple[
     Returns:
         The stacks, in the order of their structural slabs, and findings about parts that rest on nothing.
     """
+    if not slabs:
+        return (), ()
     below = _carrying_pairs(slabs, mass_per_area)
     resting_on: dict[int, list[tuple[int, BaseGeometry]]] = {}
     for index, pairs in below.items():

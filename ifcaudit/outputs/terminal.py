@@ -77,7 +77,8 @@ def print_summary(audit: Audit, files: Sequence[Path], units: str, console: Cons
     console.print(Text(f"Rules: {audit.rules.name}, {audit.rules.title}"))
     console.print(Text("       " + "; ".join(audit.rules.editions)))
     for name, value, clause in audit.rules.values:
-        console.print(Text(f"       {name}: {value} ({clause})", style="dim"))
+        source = f" ({clause})" if clause else ""
+        console.print(Text(f"       {name}: {value}{source}", style="dim"))
     _print_counts(audit, console)
     _print_worst(audit, units, console)
     _print_not_checked(audit, console)
@@ -109,7 +110,7 @@ def _print_worst(audit: Audit, units: str, console: Console) -> None:
         ("beam", "left"),
         ("storey", "left"),
         ("section", "left"),
-        (f"span [{suffix}]", "right"),
+        (f"span, {suffix}", "right"),
         ("governing", "left"),
         ("utilization", "right"),
         ("lightest adequate", "left"),
@@ -128,7 +129,8 @@ def _print_worst(audit: Audit, units: str, console: Console) -> None:
 def _print_not_checked(audit: Audit, console: Console) -> None:
     reasons = Counter(_short(beam) for beam in audit.with_status(Status.NOT_CHECKED))
     for reason, count in reasons.most_common(6):
-        console.print(Text(f"Not checked, {count} beams: {reason}", style="yellow"))
+        noun = "beam" if count == 1 else "beams"
+        console.print(Text(f"Not checked, {count} {noun}: {reason}", style="yellow"))
     if len(reasons) > 6:
         console.print(Text(f"  and {len(reasons) - 6} other reasons, see beams.csv", style="yellow"))
 
