@@ -112,7 +112,8 @@ def identify(framed: FramedBeam, rules: RuleSet) -> Member:
     """Identify section and material of one beam."""
     beam = framed.beam
     section = identify_section(beam.profile, beam.designations, rules.catalogue)
-    material = identify_material(beam.material, section.family, rules.materials)
+    kind = beam.profile.kind if beam.profile else None
+    material = identify_material(beam.material, section.family, rules.materials, kind=kind)
     return Member(
         framed=framed,
         section=section.section,

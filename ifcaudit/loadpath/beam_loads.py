@@ -16,7 +16,8 @@ SHORTEST_SEGMENT = 1e-9
 class LoadCollector:
     """Collects segments and points in stations along one beam, then cuts them at its supports.
 
-    Stations are plan distances from the beam's start. Loads beyond the first or last support go to that support.
+    Stations are plan distances from the beam's start. Loads beyond the first or last support go to that support and
+    load no span.
     """
 
     __slots__ = ("_intensities", "_magnitudes", "_positions", "_stations")
@@ -42,23 +43,30 @@ class LoadCollector:
         """Nothing has been added."""
         return not self._positions and not self._stations
 
+    def _collected(self) -> tuple[FloatArray, FloatArray, FloatArray, FloatArray]:
+        positions = np.concatenate(self._positions) if self._positions else np.zeros((0, 2))
+        intensities = np.concatenate(self._intensities) if self._intensities else np.zeros((0, 2, CASE_COUNT))
+        stations = np.array(self._stations, dtype=np.float64)
+        magnitudes = np.array(self._magnitudes, dtype=np.float64).reshape(-1, CASE_COUNT)
+        return positions, intensities, stations, magnitudes
+
     def between(self, supports: Sequence[float]) -> list[BeamLoads]:
         """Cut everything at the supports, one simple span per neighbouring pair.
 
         Args:
             supports: At least two rising stations [m].
         """
-        positions = np.concatenate(self._positions) if self._positions else np.zeros((0, 2))
-        intensities = np.concatenate(self._intensities) if self._intensities else np.zeros((0, 2, CASE_COUNT))
-        stations = np.array(self._stations, dtype=np.float64)
-        magnitudes = np.array(self._magnitudes, dtype=np.float64).reshape(-1, CASE_COUNT)
-        spans = []
-        for index, (first, last) in enumerate(pairwise(supports)):
-            at_start, at_end = index == 0, index == len(supports) - 2
-            spans.append(
-                _span(positions, intensities, stations, magnitudes, first, last, at_start=at_start, at_end=at_end)
-            )
-        return spans
+        collected = self._collected()
+        return [_span(*collected, first, last) for first, last in pairwise(supports)]
+
+    def beyond(self, first: float, last: float) -> tuple[FloatArray, FloatArray]:
+        """Loads before the first and after the last support, which go straight to them: two totals per case [N]."""
+        positions, intensities, stations, magnitudes = self._collected()
+        before = segment_totals(*clip_segments(positions, intensities, -np.inf, first)).sum(axis=0)
+        after = segment_totals(*clip_segments(positions, intensities, last, np.inf)).sum(axis=0)
+        before = before + magnitudes[stations < first].sum(axis=0)
+        after = after + magnitudes[stations >= last].sum(axis=0)
+        return np.asarray(before), np.asarray(after)
 
 
 def _span(
@@ -68,30 +76,15 @@ def _span(
     magnitudes: FloatArray,
     first: float,
     last: float,
-    *,
-    at_start: bool,
-    at_end: bool,
 ) -> BeamLoads:
     inside_positions, inside_intensities = clip_segments(positions, intensities, first, last)
     points = (stations >= first) & (stations < last)
-    if at_start:
-        points |= stations < first
-    if at_end:
-        points |= stations >= last
-    point_positions = [np.clip(stations[points], first, last) - first]
-    point_magnitudes = [magnitudes[points]]
-    for needed, low, high, place in ((at_start, -np.inf, first, 0.0), (at_end, last, np.inf, last - first)):
-        if needed:
-            beyond = segment_totals(*clip_segments(positions, intensities, low, high)).sum(axis=0)
-            if beyond.any():
-                point_positions.append(np.array([place]))
-                point_magnitudes.append(beyond[None, :])
     return BeamLoads(
         span=last - first,
         segment_positions=inside_positions - first,
         segment_intensities=inside_intensities,
-        point_positions=np.concatenate(point_positions),
-        point_magnitudes=np.concatenate(point_magnitudes),
+        point_positions=stations[points] - first,
+        point_magnitudes=magnitudes[points],
     )
 
 

@@ -19,9 +19,10 @@ from ifcaudit.floor.bearing import BearingLine
 from ifcaudit.floor.line_load import line_load
 from ifcaudit.floor.stacking import Stack
 from ifcaudit.loadpath.area_loads import AreaLoad
-from ifcaudit.loadpath.beam_loads import LoadCollector, with_uniform
+from ifcaudit.loadpath.beam_loads import LoadCollector, clip_segments, segment_totals, with_uniform
 from ifcaudit.loadpath.members import Member
 from ifcaudit.model.audit import LoadBalance
+from ifcaudit.model.building import Beam
 from ifcaudit.model.framing import Carrier, EndSupport, SlabLayout, Strip
 from ifcaudit.model.loads import CASE_COUNT, BeamLoads, FloatArray, LoadCase
 from ifcaudit.units import standard_gravity
@@ -149,13 +150,21 @@ def _support_problem(member: Member) -> str:
     if framed.bedded:
         return f"lies along {framed.bedded}: it does not span freely, and openings below it are not analysed"
     missing = [
-        f"nothing carries its {label} ({gap})"
-        for label, support, gap in (("start", framed.start, framed.start_gap), ("end", framed.end, framed.end_gap))
+        text
+        for label, support, gap, inner in (
+            ("start", framed.start, framed.start_gap, framed.interior[:1]),
+            ("end", framed.end, framed.end_gap, framed.interior[-1:]),
+        )
         if support is None
+        for text in [_overhang(framed.beam, label, inner[0]) if inner else f"nothing carries its {label} ({gap})"]
     ]
     if missing:
-        beyond = ", and it runs on beyond its supports" if framed.interior else ""
-        return f"{'; '.join(missing)}{beyond}: model the support, or move the end onto it"
+        remedy = (
+            "only simple spans are analysed; check it by hand"
+            if framed.interior
+            else "model the support, or move the end onto it"
+        )
+        return f"{'; '.join(missing)}: {remedy}"
     if framed.interior:
         names = ", ".join(support.name or support.global_id for support in framed.interior)
         return (
@@ -166,6 +175,13 @@ def _support_problem(member: Member) -> str:
     if framed.last_station - framed.first_station < LEAST_SPAN:
         return "its two supports coincide: check the model at its ends"
     return ""
+
+
+def _overhang(beam: Beam, label: str, support: EndSupport) -> str:
+    reach = support.station if label == "start" else beam.plan_length - support.station
+    return (
+        f"its {label} overhangs (by {reach:.2f} m beyond {support.carrier.value} {support.name or support.global_id})"
+    )
 
 
 def take_down(members: Sequence[Member], floors: Sequence[LoadedSlab], unread: Mapping[str, str]) -> Takedown:
@@ -280,8 +296,9 @@ def _load_from_strip(strip: Strip, floor: LoadedSlab, bearing: BearingLine, path
         weight = np.zeros(CASE_COUNT)
         weight[LoadCase.DEAD] = dead
         path.collector.add_segments(extra.positions + bearing.origin, extra.widths[:, :, None] * weight)
-    path.direct_area += strip.polygon.area
-    path.loaded.extend((float(first), float(last)) for first, last in positions)
+    inside, widths = clip_segments(positions, spread.widths[:, :, None], path.stations[0], path.stations[-1])
+    path.direct_area += float(segment_totals(inside, widths).sum())
+    path.loaded.extend((float(first), float(last)) for first, last in inside)
     path.slabs[floor.stack.slab.global_id] = floor
     if strip.overhang:
         path.findings.append(f"carries {strip.polygon.area:.1f} m² of slab that has this one support only")
@@ -321,6 +338,7 @@ def _name_loops(stuck: Sequence[_Path], paths: Mapping[str, _Path], ledger: _Led
         path.spans = path.collector.between(path.stations)
         for span in path.spans:
             ledger.stranded += with_uniform(span, path.own_weight).total()
+        ledger.stranded += sum(path.collector.beyond(path.stations[0], path.stations[-1]))
         _pass_on_doubt(path, paths)
 
 
@@ -336,6 +354,9 @@ def _solve_level(level: Sequence[_Path], paths: Mapping[str, _Path], ledger: _Le
             at_supports[index] = at_supports[index] + results[row, 0]
             at_supports[index + 1] = at_supports[index + 1] + results[row, 1]
             row += 1
+        before, after = path.collector.beyond(path.stations[0], path.stations[-1])
+        at_supports[0] = at_supports[0] + before
+        at_supports[len(path.spans)] = at_supports[len(path.spans)] + after
         for index, station in enumerate(path.stations):
             _hand_on(path, path.support_at(station), at_supports[index], paths, ledger)
         _pass_on_doubt(path, paths)
