@@ -12,8 +12,9 @@ Between neighbouring stations the shear is a quadratic, so that its zero, and wi
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
+from math import factorial
 
 import numpy as np
 from numpy.typing import NDArray
@@ -22,7 +23,137 @@ from ifcaudit.model.loads import CASE_COUNT, BeamLoads, FloatArray
 
 CHUNK = 64
 """Beams handled together: large enough for vector speed, small enough to stay in the cache."""
-_FACTORIAL = np.array([1.0, 1.0, 2.0, 6.0, 24.0, 120.0])
+SHORTEST_SLOPE = 1e-4
+"""Line loads shorter than this are uniform [m]."""
+OVER_SUPPORT = 1e-6
+"""A point load nearer to a support than this stands over it [m]."""
+MOST_STEPS = 60
+"""Steps in which halving alone finds a place on the span to rounding."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class PackedLoads:
+    """Macaulay terms of several beams, padded to equal numbers with terms that weigh nothing.
+
+    Attributes:
+        spans: Shape (beams,) [m].
+        stations: Where line loads begin and end, shape (beams, lines) [m].
+        steps: Change of intensity there, shape (beams, lines, CASE_COUNT) [N/m].
+        ramps: Change of slope there, shape (beams, lines, CASE_COUNT) [N/m²].
+        point_stations: Shape (beams, points) [m].
+        points: Shape (beams, points, CASE_COUNT) [N].
+        reactions: Shape (beams, 2, CASE_COUNT) [N].
+    """
+
+    spans: FloatArray
+    stations: FloatArray
+    steps: FloatArray
+    ramps: FloatArray
+    point_stations: FloatArray
+    points: FloatArray
+    reactions: FloatArray
+
+    @property
+    def breaks(self) -> FloatArray:
+        """Rising stations from 0 to the span between which the loading is smooth, shape (beams, breaks) [m]."""
+        ends = np.stack([np.zeros_like(self.spans), self.spans], axis=1)
+        inner = np.concatenate([self.stations, self.point_stations], axis=1)
+        return np.sort(np.concatenate([ends, np.clip(inner, 0.0, self.spans[:, None])], axis=1), axis=1)
+
+
+def pack(beams: Sequence[BeamLoads]) -> PackedLoads:
+    """Turn the loads of several beams into padded Macaulay terms, with their reactions.
+
+    Example:
+        >>> loads = BeamLoads(span=4.0, segment_positions=np.array([[0.0, 4.0]]),
+        ...     segment_intensities=np.full((1, 2, CASE_COUNT), 10.0), point_positions=np.zeros(0),
+        ...     point_magnitudes=np.zeros((0, CASE_COUNT)))
+        >>> pack([loads]).reactions[0, :, 0].tolist()
+        [20.0, 20.0]
+    """
+    spans = np.array([beam.span for beam in beams])
+    lines, points = _line_loads(beams), _point_loads(beams)
+    total, moment = np.zeros((len(beams), CASE_COUNT)), np.zeros((len(beams), CASE_COUNT))
+    for part in (lines, points):
+        np.add.at(total, part.rows, part.totals)
+        np.add.at(moment, part.rows, part.moments)
+    far = moment / spans[:, None]
+    return PackedLoads(
+        spans=spans,
+        stations=lines.table(lines.stations),
+        steps=lines.table(lines.terms[0]),
+        ramps=lines.table(lines.terms[1]),
+        point_stations=points.table(points.stations),
+        points=points.table(points.terms[0]),
+        reactions=np.stack([total - far, far], axis=1),
+    )
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class _Terms:
+    """Loads of one kind of several beams in one list, and the terms they become.
+
+    Attributes:
+        beams: Number of beams.
+        rows: Beam of each load.
+        totals: Of each load, shape (loads, CASE_COUNT) [N].
+        moments: About the first support, of the same shape [N·m].
+        owners: Beam of each term.
+        stations: Where each term begins [m].
+        terms: Coefficients by order, each of shape (terms, CASE_COUNT).
+    """
+
+    beams: int
+    rows: NDArray[np.int64]
+    totals: FloatArray
+    moments: FloatArray
+    owners: NDArray[np.int64]
+    stations: FloatArray
+    terms: tuple[FloatArray, ...]
+
+    def table(self, values: FloatArray) -> FloatArray:
+        """Arrange one value per term in one row per beam, padded with zeros."""
+        order = np.argsort(self.owners, kind="stable")
+        counts = np.bincount(self.owners, minlength=self.beams)
+        columns = np.arange(len(order)) - np.repeat(np.cumsum(counts) - counts, counts)
+        result = np.zeros((self.beams, int(counts.max(initial=0)), *values.shape[1:]))
+        result[self.owners[order], columns] = values[order]
+        return result
+
+
+def _line_loads(beams: Sequence[BeamLoads]) -> _Terms:
+    rows = np.repeat(np.arange(len(beams)), [len(beam.segment_positions) for beam in beams])
+    where = np.concatenate([np.zeros((0, 2)), *(beam.segment_positions for beam in beams)])
+    what = np.concatenate([np.zeros((0, 2, CASE_COUNT)), *(beam.segment_intensities for beam in beams)])
+    length = (where[:, 1] - where[:, 0])[:, None]
+    # The slope of a very short load would be lost in rounding: it acts with its mean intensity.
+    sloped = length > SHORTEST_SLOPE
+    what = np.where(sloped[:, :, None], what, what.mean(axis=1, keepdims=True))
+    left, right = what[:, 0], what[:, 1]
+    slope = np.divide(right - left, length, out=np.zeros_like(left), where=sloped)
+    totals = length * (left + right) / 2.0
+    # The moment of a trapezoid about its own start: w_left l²/2 + (w_right - w_left) l²/3.
+    about_start = length**2 * (left / 6.0 + right / 3.0)
+    return _Terms(
+        len(beams),
+        rows,
+        totals,
+        totals * where[:, :1] + about_start,
+        np.concatenate([rows, rows]),
+        where.T.ravel(),
+        (np.concatenate([left, -right]), np.concatenate([slope, -slope])),
+    )
+
+
+def _point_loads(beams: Sequence[BeamLoads]) -> _Terms:
+    counts = [len(beam.point_positions) for beam in beams]
+    rows = np.repeat(np.arange(len(beams)), counts)
+    ends = np.repeat(np.array([beam.span for beam in beams]), counts)
+    where = np.concatenate([np.zeros(0), *(beam.point_positions for beam in beams)])
+    where = np.where(where < OVER_SUPPORT, 0.0, where)
+    where = np.where(where > ends - OVER_SUPPORT, ends, where)
+    what = np.concatenate([np.zeros((0, CASE_COUNT)), *(beam.point_magnitudes for beam in beams)])
+    return _Terms(len(beams), rows, what, what * where[:, None], rows, where, (what,))
 
 
 def reactions(beams: Sequence[BeamLoads]) -> FloatArray:
@@ -34,78 +165,77 @@ def reactions(beams: Sequence[BeamLoads]) -> FloatArray:
     Returns:
         Shape (beams, 2, CASE_COUNT) [N].
     """
-    result = np.zeros((len(beams), 2, CASE_COUNT))
-    for index, beam in enumerate(beams):
-        first, last = beam.segment_positions[:, 0], beam.segment_positions[:, 1]
-        left, right = beam.segment_intensities[:, 0], beam.segment_intensities[:, 1]
-        length = (last - first)[:, None]
-        total = length * (left + right) / 2.0
-        # The moment of a trapezoid about its own start: w_left l²/2 + (w_right - w_left) l²/3.
-        about_start = length**2 * (left / 6.0 + right / 3.0)
-        moment = (total * first[:, None] + about_start).sum(axis=0)
-        moment = moment + (beam.point_magnitudes * beam.point_positions[:, None]).sum(axis=0)
-        result[index, 1] = moment / beam.span
-        result[index, 0] = beam.total() - result[index, 1]
-    return result
+    return pack(beams).reactions if beams else np.zeros((0, 2, CASE_COUNT))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class PackedLoads:
-    """Macaulay terms of several beams, padded to equal numbers with terms that weigh nothing.
+class _Combined:
+    """Packed loads with factors applied: one set of terms per beam and combination."""
 
-    Attributes:
-        spans: Shape (beams,) [m].
-        stations: Where terms begin, shape (beams, terms) [m].
-        orders: -1 for a point load, 0 for a step, 1 for a ramp, shape (beams, terms).
-        coefficients: Shape (beams, terms, CASE_COUNT) [N m^-(n+1)].
-        breaks: Rising stations from 0 to the span between which the loading is smooth, shape (beams, breaks) [m].
-    """
+    packed: PackedLoads
+    steps: FloatArray
+    ramps: FloatArray
+    points: FloatArray
+    left: FloatArray
+    right: FloatArray
 
-    spans: FloatArray
-    stations: FloatArray
-    orders: NDArray[np.int64]
-    coefficients: FloatArray
-    breaks: FloatArray
+    def spread(self, positions: FloatArray) -> FloatArray:
+        """Repeat places for every combination: (beams, places) becomes (beams, combinations, places)."""
+        return np.broadcast_to(positions[:, None, :], (*self.left.shape, positions.shape[1]))
 
+    def integral(self, positions: FloatArray, times: int) -> FloatArray:
+        """Load integrated ``times`` times from the left at places of shape (beams, combinations, places).
 
-def pack(beams: Sequence[BeamLoads]) -> PackedLoads:
-    """Turn the loads of several beams into padded Macaulay terms."""
-    terms = max(4 * len(beam.segment_positions) + len(beam.point_positions) for beam in beams)
-    stations = np.zeros((len(beams), terms))
-    orders = np.zeros((len(beams), terms), dtype=np.int64)
-    coefficients = np.zeros((len(beams), terms, CASE_COUNT))
-    for row, beam in enumerate(beams):
-        first, last = beam.segment_positions[:, 0], beam.segment_positions[:, 1]
-        left, right = beam.segment_intensities[:, 0], beam.segment_intensities[:, 1]
-        slope = (right - left) / (last - first)[:, None]
-        where = np.concatenate([first, first, last, last, beam.point_positions])
-        count = len(first)
-        stations[row, : len(where)] = where
-        orders[row, : len(where)] = np.concatenate(
-            [np.tile(np.repeat([0, 1], count), 2), np.full(len(beam.point_positions), -1)]
-        )
-        coefficients[row, : len(where)] = np.concatenate([left, slope, -right, -slope, beam.point_magnitudes])
-    spans = np.array([beam.span for beam in beams])
-    inner = np.clip(stations, 0.0, spans[:, None])
-    breaks = np.sort(np.concatenate([np.zeros((len(beams), 1)), inner, spans[:, None]], axis=1), axis=1)
-    return PackedLoads(spans=spans, stations=stations, orders=orders, coefficients=coefficients, breaks=breaks)
+        ``times``: 1 for shear, 2 for moment, 3 and 4 for slope and deflection; a point load counts where it stands.
+        """
+        reach = np.maximum(positions[:, :, None, :] - self.packed.stations[:, None, :, None], 0.0)
+        lower = _power(reach, times) / factorial(times)
+        result = np.einsum("bct,bctp->bcp", self.steps, lower)
+        result += np.einsum("bct,bctp->bcp", self.ramps, lower * reach / (times + 1))
+        if self.points.shape[2]:
+            gap = positions[:, :, None, :] - self.packed.point_stations[:, None, :, None]
+            shape = (gap >= 0.0).astype(np.float64) if times == 1 else _power(np.maximum(gap, 0.0), times - 1)
+            result += np.einsum("bct,bctp->bcp", self.points, shape / factorial(times - 1))
+        return np.asarray(result)
+
+    def moment(self, positions: FloatArray) -> FloatArray:
+        """Sagging moment at places of shape (beams, combinations, places)."""
+        return self.left[:, :, None] * positions - self.integral(positions, 2)
 
 
-def _integral(packed: PackedLoads, weights: FloatArray, positions: FloatArray, times: int) -> FloatArray:
-    """Load integrated ``times`` times from the left, per beam, combination and position.
+def _power(value: FloatArray, exponent: int) -> FloatArray:
+    result = value
+    for _ in range(exponent - 1):
+        result = result * value
+    return result
 
-    Args:
-        packed: Terms.
-        weights: Terms times factors, shape (beams, combinations, terms).
-        positions: Shape (beams, combinations, positions) [m]; a point load counts where it stands.
-        times: 1 for shear, 2 for moment, 3 and 4 for slope and deflection.
-    """
-    power = packed.orders + times
-    reach = positions[:, :, None, :] - packed.stations[:, None, :, None]
-    inside = np.where(reach >= 0.0, reach, 0.0)
-    exponent = power[:, None, :, None]
-    shape = np.where(exponent == 0, (reach >= 0.0).astype(np.float64), inside**exponent) / _FACTORIAL[exponent]
-    return np.asarray(np.einsum("bct,bctp->bcp", weights, shape))
+
+def _combine(beams: Sequence[BeamLoads], factors: FloatArray) -> _Combined:
+    packed = pack(beams)
+    steps, ramps, points, ends = (
+        np.einsum("bck,btk->bct", factors, terms)
+        for terms in (packed.steps, packed.ramps, packed.points, packed.reactions)
+    )
+    return _Combined(packed, steps, ramps, points, ends[:, :, 0], ends[:, :, 1])
+
+
+def _in_chunks(
+    beams: Sequence[BeamLoads],
+    factors: FloatArray,
+    work: Callable[[_Combined, NDArray[np.int64]], tuple[FloatArray, ...]],
+    empty: tuple[FloatArray, ...],
+) -> tuple[FloatArray, ...]:
+    """Do the work on beams of like numbers of loads together, so that little is padded, and restore the order."""
+    if not beams:
+        return empty
+    each = np.broadcast_to(factors, (len(beams), *factors.shape[-2:]))
+    order = np.argsort([2 * len(beam.segment_positions) + len(beam.point_positions) for beam in beams], kind="stable")
+    parts = []
+    for first in range(0, len(order), CHUNK):
+        rows = order[first : first + CHUNK]
+        parts.append(work(_combine([beams[row] for row in rows], each[rows]), rows))
+    back = np.argsort(order, kind="stable")
+    return tuple(np.concatenate(column)[back] for column in zip(*parts, strict=True))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -137,32 +267,18 @@ def envelope(beams: Sequence[BeamLoads], factors: FloatArray) -> Forces:
     Returns:
         Exact extremes.
     """
-    parts = [_chunk_envelope(chunk, part) for chunk, part in _chunks(beams, factors)]
-    if not parts:
-        empty = np.zeros((0, factors.shape[-2]))
-        return Forces(empty, empty, empty, empty, empty)
-    return Forces(*(np.concatenate([part[column] for part in parts]) for column in range(5)))
+    none = np.zeros((0, factors.shape[-2]))
+    return Forces(*_in_chunks(beams, factors, lambda combined, _: _extremes(combined), (none,) * 5))
 
 
-def _chunks(beams: Sequence[BeamLoads], factors: FloatArray) -> Iterator[tuple[Sequence[BeamLoads], FloatArray]]:
-    each = np.broadcast_to(factors, (len(beams), *factors.shape[-2:]))
-    for first in range(0, len(beams), CHUNK):
-        yield beams[first : first + CHUNK], each[first : first + CHUNK]
-
-
-def _support_reactions(beams: Sequence[BeamLoads], factors: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """Reactions per beam and combination, shapes (beams, combinations)."""
-    both = np.einsum("bck,bsk->bcs", factors, reactions(beams))
-    return both[:, :, 0], both[:, :, 1]
-
-
-def _chunk_envelope(beams: Sequence[BeamLoads], factors: FloatArray) -> tuple[FloatArray, ...]:
-    packed = pack(beams)
-    weights = np.einsum("bck,btk->bct", factors, packed.coefficients)
-    left, right = _support_reactions(beams, factors)
-    positions, moments = _moment_candidates(packed, weights, left)
+def _extremes(combined: _Combined) -> tuple[FloatArray, ...]:
+    breaks = combined.spread(combined.packed.breaks)
+    after = combined.left[:, :, None] - combined.integral(breaks, 1)
+    positions = _peak_candidates(combined, breaks, after)
+    moments = combined.moment(positions)
     best = moments.argmax(axis=2)[:, :, None]
-    shears, shear_positions = _shear_candidates(packed, weights, left, right)
+    shears = _shears(combined, breaks, after)
+    shear_positions = np.concatenate([breaks, breaks], axis=2)
     worst = np.abs(shears).argmax(axis=2)[:, :, None]
     return (
         np.maximum(np.take_along_axis(moments, best, axis=2)[:, :, 0], 0.0),
@@ -173,52 +289,37 @@ def _chunk_envelope(beams: Sequence[BeamLoads], factors: FloatArray) -> tuple[Fl
     )
 
 
-def _shear_candidates(
-    packed: PackedLoads, weights: FloatArray, left: FloatArray, right: FloatArray
-) -> tuple[FloatArray, FloatArray]:
-    """Shear just inside both supports and on both sides of every break."""
-    combinations = weights.shape[1]
-    breaks = np.broadcast_to(packed.breaks[:, None, :], (len(packed.spans), combinations, packed.breaks.shape[1]))
-    after = left[:, :, None] - _integral(packed, weights, breaks, 1)
-    before = after + _jumps(packed, weights, breaks)
-    ends = np.stack([left, -right], axis=2)
-    end_positions = np.stack([np.zeros_like(left), np.broadcast_to(packed.spans[:, None], left.shape)], axis=2)
-    return np.concatenate([ends, after, before], axis=2), np.concatenate([end_positions, breaks, breaks], axis=2)
+def _shears(combined: _Combined, breaks: FloatArray, after: FloatArray) -> FloatArray:
+    """Shear just after and just before every break within the beam.
+
+    Nothing of the beam lies before its first support or after its last: what stands over a support loads no section.
+    """
+    at = breaks[:, :, None, :] == combined.packed.point_stations[:, None, :, None]
+    before = after + np.einsum("bct,bctp->bcp", combined.points, at.astype(np.float64))
+    is_last = breaks >= combined.packed.spans[:, None, None]
+    return np.concatenate([np.where(is_last, before, after), np.where(breaks > 0.0, before, after)], axis=2)
 
 
-def _jumps(packed: PackedLoads, weights: FloatArray, positions: FloatArray) -> FloatArray:
-    """Sum of the point loads standing exactly at each position."""
-    at = (positions[:, :, None, :] == packed.stations[:, None, :, None]) & (packed.orders == -1)[:, None, :, None]
-    return np.asarray(np.einsum("bct,bctp->bcp", weights, at.astype(np.float64)))
-
-
-def _moment_candidates(packed: PackedLoads, weights: FloatArray, left: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """Moments at every break and at the zero of the shear within each interval."""
-    combinations = weights.shape[1]
-    shape = (len(packed.spans), combinations, packed.breaks.shape[1])
-    breaks = np.broadcast_to(packed.breaks[:, None, :], shape)
-    after = left[:, :, None] - _integral(packed, weights, breaks, 1)
-    load, slope = _intensity_after(packed, weights, breaks)
+def _peak_candidates(combined: _Combined, breaks: FloatArray, after: FloatArray) -> FloatArray:
+    """Every break, and the zero of the shear within each interval, where the moment may peak."""
+    load, slope = _intensity_after(combined, breaks)
     width = np.diff(breaks, axis=2)
     zero = _quadratic_zero(-0.5 * slope[:, :, :-1], -load[:, :, :-1], after[:, :, :-1], width)
-    positions = np.concatenate([breaks, breaks[:, :, :-1] + zero], axis=2)
-    moments = left[:, :, None] * positions - _integral(packed, weights, positions, 2)
-    return positions, moments
+    return np.concatenate([breaks, breaks[:, :, :-1] + zero], axis=2)
 
 
-def _intensity_after(packed: PackedLoads, weights: FloatArray, positions: FloatArray) -> tuple[FloatArray, FloatArray]:
+def _intensity_after(combined: _Combined, positions: FloatArray) -> tuple[FloatArray, FloatArray]:
     """Line load and its slope just after each position."""
-    begun = positions[:, :, None, :] >= packed.stations[:, None, :, None]
-    reach = positions[:, :, None, :] - packed.stations[:, None, :, None]
-    step = (packed.orders == 0)[:, None, :, None] & begun
-    ramp = (packed.orders == 1)[:, None, :, None] & begun
-    load = np.einsum("bct,bctp->bcp", weights, step + np.where(ramp, reach, 0.0))
-    return load, np.einsum("bct,bctp->bcp", weights, ramp.astype(np.float64))
+    reach = positions[:, :, None, :] - combined.packed.stations[:, None, :, None]
+    begun = (reach >= 0.0).astype(np.float64)
+    load = np.einsum("bct,bctp->bcp", combined.steps, begun)
+    load += np.einsum("bct,bctp->bcp", combined.ramps, np.maximum(reach, 0.0))
+    return np.asarray(load), np.asarray(np.einsum("bct,bctp->bcp", combined.ramps, begun))
 
 
 def _quadratic_zero(a: FloatArray, b: FloatArray, c: FloatArray, width: FloatArray) -> FloatArray:
     """First zero of a t² + b t + c within 0..width, else 0; the root that does not cancel is used."""
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         root = np.sqrt(np.maximum(b * b - 4.0 * a * c, 0.0))
         q = -0.5 * (b + np.where(b >= 0.0, root, -root))
         first, second = c / q, q / a
@@ -234,22 +335,17 @@ def moment_at(beams: Sequence[BeamLoads], factors: FloatArray, positions: FloatA
     Args:
         beams: Loads of each.
         factors: Shape (combinations, CASE_COUNT), or (beams, combinations, CASE_COUNT).
-        positions: Shape (beams, positions) [m].
+        positions: Shape (beams, positions), or (beams, combinations, positions) [m].
 
     Returns:
         Shape (beams, combinations, positions) [N·m].
     """
-    parts = []
-    row = 0
-    for chunk, part in _chunks(beams, factors):
-        packed = pack(chunk)
-        weights = np.einsum("bck,btk->bct", part, packed.coefficients)
-        left, _ = _support_reactions(chunk, part)
-        where = positions[row : row + len(chunk)][:, None, :]
-        where = np.broadcast_to(where, (len(chunk), part.shape[1], positions.shape[1]))
-        parts.append(left[:, :, None] * where - _integral(packed, weights, where, 2))
-        row += len(chunk)
-    return np.concatenate(parts) if parts else np.zeros((0, factors.shape[-2], positions.shape[-1]))
+
+    def work(combined: _Combined, rows: NDArray[np.int64]) -> tuple[FloatArray, ...]:
+        where = positions[rows]
+        return (combined.moment(combined.spread(where) if where.ndim == 2 else where),)
+
+    return _in_chunks(beams, factors, work, (np.zeros((0, factors.shape[-2], positions.shape[-1])),))[0]
 
 
 def deflection(beams: Sequence[BeamLoads], factors: FloatArray) -> tuple[FloatArray, FloatArray]:
@@ -262,27 +358,34 @@ def deflection(beams: Sequence[BeamLoads], factors: FloatArray) -> tuple[FloatAr
     Returns:
         Two arrays of shape (beams, combinations): deflection times EI [N·m³] and position [m].
     """
-    parts = [_chunk_deflection(chunk, part) for chunk, part in _chunks(beams, factors)]
-    if not parts:
-        empty = np.zeros((0, factors.shape[-2]))
-        return empty, empty
-    return np.concatenate([part[0] for part in parts]), np.concatenate([part[1] for part in parts])
+    none = np.zeros((0, factors.shape[-2]))
+    values = _in_chunks(beams, factors, lambda combined, _: _largest_deflection(combined), (none, none))
+    return values[0], values[1]
 
 
-def _chunk_deflection(beams: Sequence[BeamLoads], factors: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """Find where the slope vanishes by bisection; downward loads on a simple span leave one such place."""
-    packed = pack(beams)
-    weights = np.einsum("bck,btk->bct", factors, packed.coefficients)
-    left, _ = _support_reactions(beams, factors)
-    spans = np.broadcast_to(packed.spans[:, None], left.shape)
-    at_span = _integral(packed, weights, spans[:, :, None], 4)[:, :, 0]
+def _largest_deflection(combined: _Combined) -> tuple[FloatArray, FloatArray]:
+    """Find where the slope vanishes; downward loads on a simple span leave one such place.
+
+    Newton's method, as the slope's own slope is the moment, held between bounds that close in on the place.
+    """
+    left = combined.left
+    spans = np.broadcast_to(combined.packed.spans[:, None], left.shape)
+    at_span = combined.integral(spans[:, :, None], 4)[:, :, 0]
     # EI y = slope0 x - R x^3/6 + load integrated four times, and y = 0 at the far support.
     slope0 = (left * spans**3 / 6.0 - at_span) / spans
-    low, high = np.zeros_like(left), spans.copy()
-    for _ in range(60):
-        middle = 0.5 * (low + high)
-        slope = slope0 - left * middle**2 / 2.0 + _integral(packed, weights, middle[:, :, None], 3)[:, :, 0]
-        low, high = np.where(slope > 0.0, middle, low), np.where(slope > 0.0, high, middle)
-    where = 0.5 * (low + high)
-    value = slope0 * where - left * where**3 / 6.0 + _integral(packed, weights, where[:, :, None], 4)[:, :, 0]
+    low, high, where = np.zeros_like(left), spans, spans / 2.0
+    for _ in range(MOST_STEPS):
+        slope = slope0 - left * where**2 / 2.0 + combined.integral(where[:, :, None], 3)[:, :, 0]
+        low, high = np.where(slope > 0.0, where, low), np.where(slope > 0.0, high, where)
+        moment = combined.moment(where[:, :, None])[:, :, 0]
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
+            next_place = where + slope / moment
+        # Where the bounds exclude the step, or there is no moment to divide by, halve instead.
+        next_place = np.where((next_place >= low) & (next_place <= high), next_place, 0.5 * (low + high))
+        next_place = np.where(slope == 0.0, where, next_place)
+        settled = np.abs(next_place - where) <= 1e-10 * spans
+        where = next_place
+        if settled.all():
+            break
+    value = slope0 * where - left * where**3 / 6.0 + combined.integral(where[:, :, None], 4)[:, :, 0]
     return value, where

@@ -8,7 +8,7 @@ from typing import Protocol, cast
 
 from numpy.typing import ArrayLike
 
-from ifcaudit.checks.standards.aisc_360 import Factors, Sections, Strength
+from ifcaudit.checks.strength import Factors, Sections, Strength
 from ifcaudit.model.audit import Check
 from ifcaudit.model.building import BendingAxis
 from ifcaudit.model.loads import BeamLoads
@@ -81,7 +81,10 @@ class Standard(Protocol):
         factors: Factors,
         axis: BendingAxis,
     ) -> Strength:
-        """Design flexural strength."""
+        """Design flexural strength.
+
+        Sizing relies on it to fall with ``unbraced_length`` and to gain at most in proportion to ``C_b``.
+        """
         ...
 
     def shear_strength(

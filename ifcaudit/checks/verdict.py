@@ -1,30 +1,33 @@
-"""Demand against capacity of simple-span beams: flexure, shear, live-load and total deflection."""
+"""Demand against capacity of simple-span beams: flexure, shear, live-load and total deflection.
+
+Beams of one kind of section, one material and one way of bracing are checked together: the last axis of every array
+below counts beams, the one before it load combinations, the first one unbraced segments.
+"""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
-from functools import lru_cache
 
 import numpy as np
+from numpy.typing import ArrayLike, NDArray
 
-from ifcaudit.analysis.simple_beam import Forces, deflection, envelope, moment_at
+from ifcaudit.analysis.simple_beam import Forces, deflection, envelope, moment_at, reactions
 from ifcaudit.checks.interface import CheckInput, CheckOutcome, Standard, load_standard
-from ifcaudit.checks.standards.aisc_360 import Strength, details_at
+from ifcaudit.checks.strength import Strength
 from ifcaudit.loadpath.beam_loads import with_uniform
 from ifcaudit.model.audit import Check, CheckName
 from ifcaudit.model.building import BendingAxis
 from ifcaudit.model.loads import CASE_COUNT, BeamLoads, FloatArray, LoadCase
-from ifcaudit.model.material import Material
-from ifcaudit.model.section import Section
+from ifcaudit.model.section import section_table
 from ifcaudit.rulebook.records import RuleSet, RuleValue
 from ifcaudit.units import standard_gravity
 
-LIVE_SERVICE = (
-    ("L + Lr", (LoadCase.LIVE, LoadCase.LIVE_UNREDUCED, LoadCase.ROOF_LIVE)),
-    ("L + S", (LoadCase.LIVE, LoadCase.LIVE_UNREDUCED, LoadCase.SNOW)),
-)
-"""Service loads for live-load deflection; roof live load and snow do not act together."""
+FLOOR_LIVE = (LoadCase.LIVE, LoadCase.LIVE_UNREDUCED)
+LIVE_SERVICE = (("Lr", (*FLOOR_LIVE, LoadCase.ROOF_LIVE)), ("S", (*FLOOR_LIVE, LoadCase.SNOW)))
+"""Service loads for deflection: floor live load with roof live load or with snow, which do not act together."""
+TOGETHER = 1024
+"""Most beams checked in one array, which bounds the memory."""
 QUARTERS = np.array([0.25, 0.5, 0.75])
 
 
@@ -92,23 +95,34 @@ def _check_ready(items: Sequence[CheckInput], rules: RuleSet, standard: Standard
     loads = [with_uniform(item.loads, self_weight(item)) for item in items]
     factors = strength_factors(items, rules)
     forces = envelope(loads, factors)
-    live = deflection(loads, service_factors(items, 0.0))
-    total = deflection(loads, service_factors(items, rules.deflection.steel_dead_share.value))
-    outcomes = []
-    for row, item in enumerate(items):
-        flexure = _flexure(item, loads[row], factors[row], _row(forces, row), rules, standard)
-        shear = _shear(item, _row(forces, row), rules, standard)
-        if flexure is None or shear is None:
-            outcomes.append(CheckOutcome(problem=_slender(item)))
-            continue
-        deflections = _deflections(
-            item,
-            (live[0][row], live[1][row]),
-            (total[0][row], total[1][row]),
-            rules,
+    deflections = _deflections(items, loads, rules)
+    outcomes: dict[int, CheckOutcome] = {}
+    for rows in _alike(items):
+        group = [items[row] for row in rows]
+        segments = (
+            braced_throughout(forces, rows)
+            if group[0].continuously_braced
+            else unbraced_segments(group, [loads[row] for row in rows], factors[rows], forces.moment_position[rows])
         )
-        outcomes.append(CheckOutcome(checks=(flexure, shear, *deflections)))
-    return outcomes
+        flexures = _flexures(group, segments, rules, standard)
+        shears = _shears(group, forces.shear[rows], forces.shear_position[rows], rules, standard)
+        for row, flexure, shear in zip(rows.tolist(), flexures, shears, strict=True):
+            if flexure is None or shear is None:
+                outcomes[row] = CheckOutcome(problem=_slender(items[row]))
+            else:
+                outcomes[row] = CheckOutcome(checks=(flexure, shear, *deflections[row]))
+    return [outcomes[row] for row in range(len(items))]
+
+
+def _alike(items: Sequence[CheckInput]) -> Iterator[NDArray[np.int64]]:
+    """Rows of beams that one array can hold: of one kind of section, material, axis and way of bracing."""
+    groups: dict[object, list[int]] = {}
+    for row, item in enumerate(items):
+        key = (item.section.kind, item.material, item.axis, item.continuously_braced)
+        groups.setdefault(key, []).append(row)
+    for rows in groups.values():
+        for first in range(0, len(rows), TOGETHER):
+            yield np.array(rows[first : first + TOGETHER], dtype=np.int64)
 
 
 def _slender(item: CheckInput) -> str:
@@ -118,129 +132,138 @@ def _slender(item: CheckInput) -> str:
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class _BeamForces:
-    """Extremes of one beam, per combination."""
-
-    moment: FloatArray
-    moment_position: FloatArray
-    shear: FloatArray
-    shear_position: FloatArray
-
-
-def _row(forces: Forces, row: int) -> _BeamForces:
-    return _BeamForces(forces.moment[row], forces.moment_position[row], forces.shear[row], forces.shear_position[row])
-
-
-@dataclass(frozen=True, slots=True, eq=False)
 class Segments:
-    """Unbraced segments of one beam: lengths (segments,), and per segment and combination C_b and the largest moment.
+    """Unbraced segments of several beams, padded with segments that have neither length nor moment.
 
     Attributes:
-        lengths: Shape (segments, 1) [m].
-        gradients: C_b, shape (segments, combinations).
-        moments: Largest moment within each, shape (segments, combinations) [N·m].
-        positions: Where it occurs, of the same shape [m].
+        starts: From the first support, shape (segments, beams) [m].
+        lengths: Shape (segments, beams) [m].
+        peaks: Where the moment is largest within each, shape (segments, combinations, beams) [m].
+        largest: Moment there, of the same shape [N·m].
+        quarters: Moments at the quarter points, shape (3, segments, combinations, beams) [N·m].
     """
 
+    starts: FloatArray
     lengths: FloatArray
-    gradients: FloatArray
-    moments: FloatArray
-    positions: FloatArray
+    peaks: FloatArray
+    largest: FloatArray
+    quarters: FloatArray
+
+
+def braced_throughout(forces: Forces, rows: NDArray[np.int64]) -> Segments:
+    """One segment of no length, which carries the largest moment of the beam all along."""
+    largest = forces.moment[rows].T[None]
+    none = np.zeros((1, len(rows)))
+    return Segments(none, none, forces.moment_position[rows].T[None], largest, np.stack([largest] * 3))
 
 
 def unbraced_segments(
-    item: CheckInput, loads: BeamLoads, factors: FloatArray, peak_positions: FloatArray, standard: Standard
+    items: Sequence[CheckInput], loads: Sequence[BeamLoads], factors: FloatArray, peaks: FloatArray
 ) -> Segments:
-    """Divide a beam at its braces. On a simple span under downward loads the moment rises to one peak and falls."""
-    ends = np.array([0.0, *item.braced_positions, loads.span])
-    starts, lengths = ends[:-1], np.diff(ends)
-    inner = starts[:, None] + lengths[:, None] * QUARTERS
-    peaks = np.clip(peak_positions[None, :], starts[:, None], ends[1:, None])
-    places = np.concatenate([inner.ravel(), peaks.ravel()])
-    moments = moment_at([loads], factors, places[None, :])[0]
-    at_quarters = moments[:, : inner.size].reshape(len(factors), *inner.shape)
-    at_peaks = moments[:, inner.size :].reshape(len(factors), *peaks.shape)
-    largest = np.maximum(np.diagonal(at_peaks, axis1=0, axis2=2), 0.0)
-    gradients = standard.moment_gradient_factor(
-        largest, at_quarters[:, :, 0].T, at_quarters[:, :, 1].T, at_quarters[:, :, 2].T
+    """Divide beams at their braces.
+
+    Args:
+        items: Beams.
+        loads: Their loads.
+        factors: Shape (beams, combinations, CASE_COUNT).
+        peaks: Where each beam's moment is largest, shape (beams, combinations) [m]. On a simple span under downward
+            loads the moment rises to it and falls after it, so that within a segment the nearest place is the worst.
+    """
+    inside = [sorted({at for at in item.braced_positions if 0.0 < at < item.loads.span}) for item in items]
+    count = max(len(braces) for braces in inside) + 1
+    ends = np.array(
+        [[0.0, *at, *[item.loads.span] * (count - len(at))] for at, item in zip(inside, items, strict=True)]
     )
-    return Segments(lengths[:, None], np.asarray(gradients), largest, peaks)
+    starts, lengths = ends[:, :-1], np.diff(ends, axis=1)
+    within = (starts[:, :, None] + lengths[:, :, None] * QUARTERS).reshape(len(items), 1, -1)
+    nearest = np.clip(peaks[:, :, None], starts[:, None, :], ends[:, None, 1:])
+    within = np.broadcast_to(within, (*peaks.shape, within.shape[2]))
+    moments = np.maximum(moment_at(loads, factors, np.concatenate([within, nearest], axis=2)), 0.0)
+    quarters = moments[:, :, : 3 * count].reshape(*peaks.shape, count, 3)
+    return Segments(
+        starts.T, lengths.T, nearest.transpose(2, 1, 0), moments[:, :, 3 * count :].transpose(2, 1, 0), quarters.T
+    )
 
 
-def _flexure(
-    item: CheckInput,
-    loads: BeamLoads,
-    factors: FloatArray,
-    forces: _BeamForces,
-    rules: RuleSet,
-    standard: Standard,
-) -> Check | None:
-    """Largest utilization over combinations and unbraced segments."""
-    if item.continuously_braced or item.axis is BendingAxis.FLAT:
-        strength = _braced_strength(item, rules)
-        demands, positions = forces.moment[None, :], forces.moment_position[None, :]
-    else:
-        segments = unbraced_segments(item, loads, factors, forces.moment_position, standard)
-        strength = standard.flexural_strength(
-            item.section, item.material, segments.lengths, segments.gradients, rules.steel.factors, item.axis
-        )
-        demands, positions = segments.moments, segments.positions
-    design = np.broadcast_to(strength.design, demands.shape)
-    if np.isnan(design).any():
-        return None
+def _flexures(
+    items: Sequence[CheckInput], segments: Segments, rules: RuleSet, standard: Standard
+) -> list[Check | None]:
+    """Flexure of beams that are alike: the largest utilization over combinations and unbraced segments."""
+    gradients = standard.moment_gradient_factor(segments.largest, *segments.quarters)
+    table = section_table(tuple(item.section for item in items))
+    strength = standard.flexural_strength(
+        table, items[0].material, segments.lengths[:, None, :], gradients, rules.steel.factors, items[0].axis
+    )
+    return _governing_checks(CheckName.FLEXURE, segments.largest, segments.peaks, strength, rules, standard)
+
+
+def _shears(
+    items: Sequence[CheckInput], shear: FloatArray, positions: FloatArray, rules: RuleSet, standard: Standard
+) -> list[Check | None]:
+    """Shear of beams that are alike; arrays are of shape (beams, combinations)."""
+    table = section_table(tuple(item.section for item in items))
+    half_spans = np.array([item.loads.span for item in items]) / 2.0
+    strength = standard.shear_strength(table, items[0].material, half_spans, rules.steel.factors, items[0].axis)
+    return _governing_checks(CheckName.SHEAR, shear.T[None], positions.T[None], strength, rules, standard)
+
+
+_SYMBOLS = {CheckName.FLEXURE: ("M_n", "N·m"), CheckName.SHEAR: ("V_n", "N")}
+
+
+def _governing_checks(
+    name: CheckName, demands: FloatArray, positions: FloatArray, strength: Strength, rules: RuleSet, standard: Standard
+) -> list[Check | None]:
+    """The worst segment and combination of each beam; ``None`` where the strength is not covered.
+
+    Args:
+        name: Flexure or shear.
+        demands: Shape (segments, combinations, beams).
+        positions: Of the same shape [m].
+        strength: Of a shape that broadcasts with it.
+        rules: For the names of the combinations.
+        standard: For its title.
+    """
+    shape = demands.shape
+    design = np.broadcast_to(strength.design, shape)
+    covered = np.asarray(~np.isnan(design).any(axis=(0, 1)))
     utilization = demands / design
-    place = np.unravel_index(int(utilization.argmax()), utilization.shape)
-    segment, combination = int(place[0]), int(place[1])
-    inside = (segment, combination) if strength.nominal.shape == demands.shape else ()
-    return Check(
-        name=CheckName.FLEXURE,
-        demand=float(demands[segment, combination]),
-        capacity=float(design[segment, combination]),
-        utilization=float(utilization[segment, combination]),
-        combination=rules.strength_combinations[combination].name,
-        clause=f"{standard.TITLE} {strength.clause}",
-        limit_state=str(np.broadcast_to(strength.limit_state, demands.shape)[segment, combination]),
-        position=float(positions[segment, combination]),
-        details=(
-            ("M_n", float(np.broadcast_to(strength.nominal, demands.shape)[segment, combination]), "N·m"),
-            *details_at(strength, inside),
-        ),
-    )
+    worst = np.where(covered, utilization, 0.0).reshape(-1, shape[2]).argmax(axis=0)
+    at = (*np.unravel_index(worst, shape[:2]), np.arange(shape[2]))
+    columns = [
+        np.broadcast_to(np.asarray(values), shape)[at].tolist()
+        for values in (demands, design, utilization, strength.clause, strength.limit_state, positions)
+    ]
+    symbol, unit = _SYMBOLS[name]
+    details = _details_at({symbol: (strength.nominal, unit), **strength.details}, shape, at)
+    return [
+        Check(
+            name=name,
+            demand=demand,
+            capacity=capacity,
+            utilization=ratio,
+            combination=rules.strength_combinations[combination].name,
+            clause=f"{standard.TITLE} {clause}",
+            limit_state=limit_state,
+            position=position,
+            details=detail,
+        )
+        if known
+        else None
+        for demand, capacity, ratio, clause, limit_state, position, combination, detail, known in zip(
+            *columns, at[1].tolist(), details, covered.tolist(), strict=True
+        )
+    ]
 
 
-def _braced_strength(item: CheckInput, rules: RuleSet) -> Strength:
-    """Strength of a held compression flange: the same for every beam of one section and material."""
-    factors = tuple(sorted(rules.steel.factors.items()))
-    return _cached_strength(rules.steel_method, item.section, item.material, item.axis, factors)
-
-
-@lru_cache(maxsize=4096)
-def _cached_strength(
-    method: str, section: Section, material: Material, axis: BendingAxis, factors: tuple[tuple[str, RuleValue], ...]
-) -> Strength:
-    return load_standard(method).flexural_strength(section, material, 0.0, 1.0, dict(factors), axis)
-
-
-def _shear(item: CheckInput, forces: _BeamForces, rules: RuleSet, standard: Standard) -> Check | None:
-    strength = standard.shear_strength(
-        item.section, item.material, item.loads.span / 2.0, rules.steel.factors, item.axis
-    )
-    design = float(strength.design)
-    if np.isnan(design):
-        return None
-    row = int(forces.shear.argmax())
-    demand = float(forces.shear[row])
-    return Check(
-        name=CheckName.SHEAR,
-        demand=demand,
-        capacity=design,
-        utilization=demand / design,
-        combination=rules.strength_combinations[row].name,
-        clause=f"{standard.TITLE} {strength.clause}",
-        limit_state=str(strength.limit_state),
-        position=float(forces.shear_position[row]),
-        details=(("V_n", float(strength.nominal), "N"), *details_at(strength, ())),
-    )
+def _details_at(
+    details: Mapping[str, tuple[ArrayLike, str]], shape: tuple[int, ...], at: tuple[NDArray[np.intp], ...]
+) -> list[tuple[tuple[str, float, str], ...]]:
+    """Intermediate values of each beam, for the record."""
+    columns = [
+        [(name, value, unit) for value in np.broadcast_to(np.asarray(values, dtype=np.float64), shape)[at].tolist()]
+        for name, (values, unit) in details.items()
+    ]
+    return list(zip(*columns, strict=True))
 
 
 def flexural_rigidity(item: CheckInput) -> float:
@@ -258,38 +281,55 @@ def deflection_divisors(item: CheckInput, rules: RuleSet) -> tuple[RuleValue, Ru
     return limits.floor_live_divisor, limits.floor_total_divisor
 
 
-def _deflections(
-    item: CheckInput,
-    live: tuple[FloatArray, FloatArray],
-    total: tuple[FloatArray, FloatArray],
-    rules: RuleSet,
-) -> tuple[Check, Check]:
-    """Live-load and total deflection against the span over a divisor."""
-    rigidity, span = flexural_rigidity(item), item.loads.span
-    divisors = deflection_divisors(item, rules)
+def _deflections(items: Sequence[CheckInput], loads: Sequence[BeamLoads], rules: RuleSet) -> list[tuple[Check, Check]]:
+    """Live-load and total deflection of each beam against its span over a divisor."""
     share = rules.deflection.steel_dead_share.value
-    dead = f"{share:g} D + " if share else ""
+    live = deflection(loads, service_factors(items, 0.0))
+    total = deflection(loads, service_factors(items, share)) if share else live
+    acting = reactions(loads).sum(axis=1) > 0.0
+    live_rows, total_rows = live[0].argmax(axis=1).tolist(), total[0].argmax(axis=1).tolist()
     checks = []
-    for name, (values, positions), divisor, prefix in (
-        (CheckName.LIVE_DEFLECTION, live, divisors[0], ""),
-        (CheckName.TOTAL_DEFLECTION, total, divisors[1], dead),
-    ):
-        row = int(values.argmax())
-        demand, limit = float(values[row]) / rigidity, span / divisor.value
+    for row, item in enumerate(items):
+        divisors = deflection_divisors(item, rules)
+        live_name = _service_name(acting[row], live_rows[row], 0.0)
+        total_name = _service_name(acting[row], total_rows[row], share)
+        at_live, at_total = (row, live_rows[row]), (row, total_rows[row])
         checks.append(
-            Check(
-                name=name,
-                demand=demand,
-                capacity=limit,
-                utilization=demand / limit,
-                combination=prefix + LIVE_SERVICE[row][0],
-                clause=f"span/{divisor.value:g}, {divisor.clause}",
-                position=float(positions[row]),
-                details=(
-                    ("E", item.material.modulus_of_elasticity, "Pa"),
-                    ("I", rigidity / item.material.modulus_of_elasticity, "m⁴"),
-                    ("span", span, "m"),
+            (
+                _deflection(
+                    CheckName.LIVE_DEFLECTION, item, live[0][at_live], live[1][at_live], divisors[0], live_name
+                ),
+                _deflection(
+                    CheckName.TOTAL_DEFLECTION, item, total[0][at_total], total[1][at_total], divisors[1], total_name
                 ),
             )
         )
-    return checks[0], checks[1]
+    return checks
+
+
+def _service_name(acting: NDArray[np.bool_], row: int, dead_share: float) -> str:
+    """Name the service loads of one row of :data:`LIVE_SERVICE`, without those that do not act on the beam."""
+    roof, cases = LIVE_SERVICE[row]
+    parts = [f"{dead_share:g} D"] if dead_share else []
+    parts += ["L"] if acting[list(FLOOR_LIVE)].any() else []
+    parts += [roof] if acting[cases[-1]] else []
+    return " + ".join(parts) or "no live load"
+
+
+def _deflection(
+    name: CheckName, item: CheckInput, value: float, position: float, divisor: RuleValue, combination: str
+) -> Check:
+    """One deflection; ``value`` is the deflection times E I [N·m³]."""
+    rigidity, span = flexural_rigidity(item), item.loads.span
+    demand, limit = float(value) / rigidity, span / divisor.value
+    modulus = item.material.modulus_of_elasticity
+    return Check(
+        name=name,
+        demand=demand,
+        capacity=limit,
+        utilization=demand / limit,
+        combination=combination,
+        clause=f"span/{divisor.value:g}, {divisor.clause}",
+        position=float(position),
+        details=(("E", modulus, "Pa"), ("I", rigidity / modulus, "m⁴"), ("span", span, "m")),
+    )

@@ -9,22 +9,19 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Any, TypeAlias
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
+from ifcaudit.checks.strength import Factors, Sections, Strength
 from ifcaudit.model.building import BendingAxis
 from ifcaudit.model.material import Material, MaterialFamily
 from ifcaudit.model.section import FloatArray, Section, SectionKind, SectionTable
-from ifcaudit.rulebook.records import RuleValue
 
 MATERIAL = MaterialFamily.STEEL
 """The material this standard judges."""
 TITLE = "AISC 360-22"
 
-Sections: TypeAlias = Section | SectionTable
-Factors: TypeAlias = Mapping[str, RuleValue]
 _OPEN = {SectionKind.I_SHAPE, SectionKind.CHANNEL}
 YIELDING, LATERAL, FLANGE, WEB, LOCAL = (
     "yielding",
@@ -34,30 +31,6 @@ YIELDING, LATERAL, FLANGE, WEB, LOCAL = (
     "local buckling",
 )
 BUCKLING = "shear buckling"
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Strength:
-    """A design strength with what limits it.
-
-    Attributes:
-        nominal: Nominal strength [N·m or N], ``nan`` where not covered.
-        factor: Resistance factor.
-        limit_state: Name of the limit state that governs, of the same shape.
-        clause: Section of the specification.
-        details: Intermediate values for a checker: name -> (value in SI, unit).
-    """
-
-    nominal: FloatArray
-    factor: FloatArray
-    limit_state: NDArray[np.str_]
-    clause: str
-    details: Mapping[str, tuple[ArrayLike, str]]
-
-    @property
-    def design(self) -> FloatArray:
-        """Nominal strength times resistance factor."""
-        return np.asarray(self.factor * self.nominal)
 
 
 def not_covered(section: Section, axis: BendingAxis) -> str:
@@ -129,27 +102,30 @@ def flexural_strength(
         parts = _solid(section, material, L_b, gradient, axis)
     else:
         parts = _Parts("F1", {YIELDING: np.full_like(np.asarray(section.area, dtype=np.float64), np.nan)}, {})
-    phi = np.asarray(factors["phi_b"].value)
-    return _governing(parts, phi, {"phi_b": (factors["phi_b"].value, ""), "L_b": (L_b, "m"), "C_b": (gradient, "")})
+    return _governing(parts, factors["phi_b"].value, L_b, gradient)
 
 
 @dataclass(frozen=True, slots=True)
 class _Parts:
     """Nominal strengths by limit state, with the clause and its intermediate values."""
 
-    clause: str
+    clause: ArrayLike
     states: Mapping[str, FloatArray]
     details: Mapping[str, tuple[ArrayLike, str]]
 
 
-def _governing(parts: _Parts, phi: FloatArray, details: Mapping[str, tuple[ArrayLike, str]]) -> Strength:
+def _governing(parts: _Parts, phi: float, L_b: FloatArray, C_b: FloatArray) -> Strength:
     """The lowest limit state; one that is not covered (nan) takes the whole strength with it."""
-    names = list(parts.states)
-    values = np.stack(np.broadcast_arrays(*parts.states.values()))
+    names = np.array(list(parts.states))
+    states = [np.asarray(value, dtype=np.float64) for value in parts.states.values()]
+    shape = np.broadcast_shapes(L_b.shape, C_b.shape, *(value.shape for value in states))
+    values = np.stack([np.broadcast_to(value, shape) for value in states])
+    # nan sorts as the lowest. No state exceeds yielding, so that the first of equals is yielding.
     lowest = np.where(np.isnan(values), -np.inf, values).argmin(axis=0)
     nominal = np.take_along_axis(values, lowest[None], axis=0)[0]
-    # Strengths that do not limit are capped at yielding by their clauses, so that the first of equals is yielding.
-    return Strength(nominal, phi, np.array(names)[lowest], parts.clause, {**parts.details, **details})
+    details = {**parts.details, "phi_b": (phi, ""), "L_b": (L_b, "m"), "C_b": (C_b, "")}
+    clause = np.broadcast_to(np.asarray(parts.clause), shape)
+    return Strength(nominal, np.full(shape, phi), names[lowest], clause, details)
 
 
 def _open_major(section: Sections, material: Material, L_b: FloatArray, C_b: FloatArray) -> _Parts:
@@ -171,16 +147,16 @@ def _open_major(section: Sections, material: Material, L_b: FloatArray, C_b: Flo
     F_cr = C_b * np.pi**2 * E / slenderness**2 * np.sqrt(1.0 + 0.078 * twist * slenderness**2)  # F2-4
     M_lateral = np.where(L_b <= L_p, M_p, np.where(L_b <= L_r, inelastic, F_cr * S_x))
     lambda_f, lambda_w = np.asarray(section.flange_slenderness), np.asarray(section.web_slenderness)
-    M_flange = _flange_local(lambda_f, lambda_w, M_p, M_r, S_x, E, F_y)
+    compact = lambda_f <= 0.38 * np.sqrt(E / F_y)
+    M_flange = _flange_local(section, M_p, M_r, E, F_y)
     if section.kind is SectionKind.CHANNEL:  # F3 is written for doubly symmetric shapes
-        M_flange = np.where(lambda_f <= 0.38 * np.sqrt(E / F_y), M_p, np.nan)
+        M_flange = np.where(compact, M_p, np.nan)
     # A web that is not compact belongs to F4 and F5, which are not implemented.
     M_web = np.where(lambda_w <= 3.76 * np.sqrt(E / F_y), M_p, np.nan)
-    compact = bool(np.all(lambda_f <= 0.38 * np.sqrt(E / F_y)))
     return _Parts(
-        "F2" if compact else "F3",
+        np.where(compact, "F2", "F3"),
         {
-            YIELDING: np.broadcast_to(M_p, np.broadcast_shapes(M_p.shape, M_lateral.shape)),
+            YIELDING: M_p,
             LATERAL: np.minimum(M_lateral, M_p),
             FLANGE: M_flange,
             WEB: M_web,
@@ -189,14 +165,16 @@ def _open_major(section: Sections, material: Material, L_b: FloatArray, C_b: Flo
     )
 
 
-def _flange_local(
-    lambda_f: FloatArray, lambda_w: FloatArray, M_p: FloatArray, M_r: FloatArray, S: FloatArray, E: float, F_y: float
-) -> FloatArray:
-    """Flange local buckling of doubly symmetric shapes with compact webs: F3-1 and F3-2."""
-    lambda_pf, lambda_rf = 0.38 * np.sqrt(E / F_y), 1.0 * np.sqrt(E / F_y)
-    noncompact = M_p - (M_p - M_r) * (lambda_f - lambda_pf) / (lambda_rf - lambda_pf)  # F3-1
+def _flange_local(section: Sections, M_p: FloatArray, M_r: FloatArray, E: float, F_y: float) -> FloatArray:
+    """Flange local buckling of doubly symmetric shapes with compact webs: F3-1 and F3-2, limits of Table B4.1b."""
+    S_x = np.asarray(section.elastic_modulus_major)
+    lambda_f, lambda_w = np.asarray(section.flange_slenderness), np.asarray(section.web_slenderness)
     k_c = np.clip(4.0 / np.sqrt(lambda_w), 0.35, 0.76)
-    slender = 0.9 * E * k_c * S / lambda_f**2  # F3-2
+    lambda_pf, rolled = 0.38 * np.sqrt(E / F_y), 1.0 * np.sqrt(E / F_y)
+    # A shape outside the catalogue may be welded from plates: case 11, F_L = 0.7 F_y, instead of case 10.
+    lambda_rf = np.where(_in_catalogue(section), rolled, np.minimum(rolled, 0.95 * np.sqrt(k_c * E / (0.7 * F_y))))
+    noncompact = M_p - (M_p - M_r) * (lambda_f - lambda_pf) / (lambda_rf - lambda_pf)  # F3-1
+    slender = 0.9 * E * k_c * S_x / lambda_f**2  # F3-2
     return np.where(lambda_f <= lambda_pf, M_p, np.where(lambda_f <= lambda_rf, noncompact, slender))
 
 
@@ -236,13 +214,11 @@ def _rectangular_hollow(
     web = np.minimum(M_p - (M_p - M_y) * (0.305 * lambda_w / root - 0.738), M_p)  # F7-6
     # Slender webs (F7.3(c)) do not occur in the catalogue and are not implemented.
     M_web = np.where(lambda_w <= 2.42 * root, M_p, np.where(lambda_w <= 5.70 * root, web, np.nan))
-    M_lateral, L_p, L_r = _hollow_lateral(section, material, M_p, S, L_b, C_b)
-    if not upright:  # bending about the minor axis has no lateral-torsional buckling
-        M_lateral = np.broadcast_to(M_p, np.broadcast_shapes(M_p.shape, L_b.shape))
+    M_lateral, L_p, L_r = _hollow_lateral(section, material, (M_p, S), (L_b, C_b), axis)
     return _Parts(
         "F7",
         {
-            YIELDING: np.broadcast_to(M_p, M_lateral.shape),
+            YIELDING: M_p,
             LATERAL: np.minimum(M_lateral, M_p),
             FLANGE: M_flange,
             WEB: M_web,
@@ -252,20 +228,35 @@ def _rectangular_hollow(
 
 
 def _hollow_lateral(
-    section: Sections, material: Material, M_p: FloatArray, S: FloatArray, L_b: FloatArray, C_b: FloatArray
+    section: Sections,
+    material: Material,
+    moments: tuple[FloatArray, FloatArray],
+    segment: tuple[FloatArray, FloatArray],
+    axis: BendingAxis,
 ) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Lateral-torsional buckling of rectangular hollow sections about the major axis: F7-10 to F7-13."""
+    """Lateral-torsional buckling of rectangular hollow sections: F7-10 to F7-13; M_n, L_p and L_r.
+
+    Args:
+        section: Sections.
+        material: Steel.
+        moments: M_p and S about the axis of bending.
+        segment: L_b and C_b.
+        axis: Axis of bending.
+    """
     E, F_y = material.modulus_of_elasticity, material.yield_strength
-    r_y, J = np.asarray(section.radius_of_gyration_minor), np.asarray(section.torsion_constant)
-    stiffness = E * r_y * np.sqrt(J * np.asarray(section.area))
+    (M_p, S), (L_b, C_b) = moments, segment
+    depth, width = np.asarray(section.depth), np.asarray(section.width)
+    r_y = np.asarray(section.radius_of_gyration_minor)
+    if axis is not BendingAxis.UPRIGHT:
+        depth, width, r_y = width, depth, np.asarray(section.radius_of_gyration_major)
+    stiffness = E * r_y * np.sqrt(np.asarray(section.torsion_constant) * np.asarray(section.area))
     L_p = 0.13 * stiffness / M_p  # F7-12
     L_r = 2.0 * stiffness / (0.7 * F_y * S)  # F7-13
     inelastic = C_b * (M_p - (M_p - 0.7 * F_y * S) * (L_b - L_p) / (L_r - L_p))  # F7-10
     elastic = 2.0 * C_b * stiffness / np.maximum(L_b, 1e-9)  # F7-11
     M_lateral = np.where(L_b <= L_p, M_p, np.where(L_b <= L_r, inelastic, elastic))
-    # Square sections have no weak direction to buckle in.
-    square = np.asarray(section.width) >= np.asarray(section.depth) * (1.0 - 1e-9)
-    return np.where(square, M_p, M_lateral), L_p, L_r
+    # Square sections, and those bent about their weaker axis, have no weak direction to buckle in.
+    return np.where(width >= depth * (1.0 - 1e-9), M_p, M_lateral), L_p, L_r
 
 
 def _round_hollow(section: Sections, material: Material) -> _Parts:
@@ -292,15 +283,15 @@ def _solid(section: Sections, material: Material, L_b: FloatArray, C_b: FloatArr
     if section.kind is SectionKind.ROUND:
         return _Parts("F11", {YIELDING: M_p}, details)
     depth, thickness = np.asarray(section.depth), np.asarray(section.width)
-    if axis is BendingAxis.FLAT:  # about the minor axis there is no lateral-torsional buckling
-        return _Parts("F11", {YIELDING: M_p}, details)
+    if axis is not BendingAxis.UPRIGHT:
+        depth, thickness = thickness, depth
     ratio = L_b * depth / thickness**2
     inelastic = C_b * (1.52 - 0.274 * ratio * F_y / E) * M_y  # F11-3
     elastic = 1.9 * E * C_b / np.maximum(ratio, 1e-12) * S  # F11-4, F11-5
     M_lateral = np.where(ratio <= 0.08 * E / F_y, M_p, np.where(ratio <= 1.9 * E / F_y, inelastic, elastic))
-    return _Parts(
-        "F11", {YIELDING: np.broadcast_to(M_p, M_lateral.shape), LATERAL: np.minimum(M_lateral, M_p)}, details
-    )
+    # A bar bent about its weaker axis does not buckle sideways.
+    M_lateral = np.where(depth > thickness, np.minimum(M_lateral, M_p), M_p)
+    return _Parts("F11", {YIELDING: M_p, LATERAL: M_lateral}, details)
 
 
 # ---- shear
@@ -336,7 +327,8 @@ def shear_strength(
     area = np.asarray(section.area, dtype=np.float64)
     # A solid section yields first at mid-depth, where the shear stress is 3/2 (round: 4/3) of the mean.
     share = {SectionKind.RECTANGLE: 2.0 / 3.0, SectionKind.ROUND: 3.0 / 4.0}.get(kind, np.nan)
-    return _shear("G1", 0.6 * material.yield_strength * area * share, np.ones_like(area), factors["phi_v"].value, {})
+    plain = 0.6 * material.yield_strength * area * share
+    return _shear("G1, parabolic stress", plain, np.ones_like(area), factors["phi_v"].value, {})
 
 
 def _shear(
@@ -350,12 +342,15 @@ def _shear(
     nominal = np.asarray(plain * reduction)
     state = np.where(np.broadcast_to(reduction, nominal.shape) < 1.0, BUCKLING, YIELDING)
     factor = np.broadcast_to(np.asarray(phi, dtype=np.float64), nominal.shape)
-    return Strength(nominal, factor, state, clause, {**details, "phi_v": (factor, ""), "C_v": (reduction, "")})
+    named = {**details, "phi_v": (factor, ""), "C_v": (reduction, "")}
+    return Strength(nominal, factor, state, np.broadcast_to(np.asarray(clause), nominal.shape), named)
 
 
-def _is_rolled(section: Sections) -> bool:
-    members = section.sections if isinstance(section, SectionTable) else (section,)
-    return section.kind is SectionKind.I_SHAPE and all(member.family for member in members)
+def _in_catalogue(section: Sections) -> NDArray[np.bool_]:
+    """Whether each section is of a catalogue series, and so a rolled shape."""
+    if isinstance(section, SectionTable):
+        return np.array([bool(member.family) for member in section.sections])
+    return np.asarray(bool(section.family))
 
 
 def _open_web(section: Sections, material: Material, factors: Factors) -> Strength:
@@ -365,7 +360,8 @@ def _open_web(section: Sections, material: Material, factors: Factors) -> Streng
     A_w = np.asarray(section.depth) * np.asarray(section.web_thickness)
     limit = 1.10 * np.sqrt(5.34 * E / F_y)
     C_v1 = np.where(slenderness <= limit, 1.0, limit / slenderness)  # G2-3, G2-4
-    stocky = (slenderness <= 2.24 * np.sqrt(E / F_y)) & _is_rolled(section)  # G2.1(a)
+    rolled = _in_catalogue(section) & (section.kind is SectionKind.I_SHAPE)
+    stocky = (slenderness <= 2.24 * np.sqrt(E / F_y)) & rolled  # G2.1(a)
     phi = np.where(stocky, factors["phi_v_rolled"].value, factors["phi_v"].value)
     return _shear("G2.1", 0.6 * F_y * A_w, C_v1, phi, {"A_w": (A_w, "m²")})
 
@@ -406,13 +402,3 @@ def _round_shear(section: Sections, material: Material, L_v: FloatArray, factors
     reduction = np.minimum(slender / (0.6 * F_y), 1.0)
     plain = 0.6 * F_y * np.asarray(section.area) / 2.0  # G5-1
     return _shear("G5", plain, reduction, factors["phi_v"].value, {"L_v": (L_v, "m")})
-
-
-def details_at(strength: Strength, index: tuple[int, ...]) -> tuple[tuple[str, float, str], ...]:
-    """Intermediate values at one place of an array result, for the record."""
-    found: list[tuple[str, float, str]] = []
-    shape = strength.nominal.shape
-    for name, (value, unit) in strength.details.items():
-        array: Any = np.broadcast_to(np.asarray(value, dtype=np.float64), shape)
-        found.append((name, float(array[index]), unit))
-    return tuple(found)
