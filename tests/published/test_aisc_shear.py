@@ -53,7 +53,8 @@ def test_slender_web() -> None:
     assert section.web_slenderness == pytest.approx(106, abs=0.5)
     strength = shear_strength(replace(section, web_slenderness=106.0), steel(50), 0.0, FACTORS)  # as the example rounds
     assert float(np.asarray(strength.details["C_v"][0])) == pytest.approx(0.577, abs=0.001)
-    assert float(strength.design) / KIP == pytest.approx(176, rel=3e-3)
+    # the example goes on with t_w = 0.313 in and A_w = 11.3 in2, which are 0.4 % larger
+    assert float(strength.design) / KIP == pytest.approx(176, rel=4e-3)
     assert str(strength.limit_state) == "shear buckling"
 
 
