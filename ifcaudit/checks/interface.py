@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from importlib import import_module
 from typing import Protocol, cast
@@ -39,6 +40,38 @@ class CheckInput:
     braced_positions: tuple[float, ...] = ()
     is_roof: bool = False
     live_load_factor: float = 1.0
+
+
+def distinct(items: Sequence[CheckInput]) -> tuple[list[CheckInput], list[int]]:
+    """Find beams that are the same to the last bit, as bays and storeys repeat.
+
+    Returns:
+        The different ones, and for each item its place among them.
+    """
+    found: dict[object, int] = {}
+    different: list[CheckInput] = []
+    places: list[int] = []
+    for item in items:
+        loads = item.loads
+        key = (
+            id(item.section),
+            id(item.material),
+            item.axis,
+            item.continuously_braced,
+            item.braced_positions,
+            item.is_roof,
+            item.live_load_factor,
+            loads.span,
+            loads.segment_positions.tobytes(),
+            loads.segment_intensities.tobytes(),
+            loads.point_positions.tobytes(),
+            loads.point_magnitudes.tobytes(),
+        )
+        place = found.setdefault(key, len(different))
+        if place == len(different):
+            different.append(item)
+        places.append(place)
+    return different, places
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

@@ -13,7 +13,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from ifcaudit.analysis.simple_beam import Forces, deflection, envelope, moment_at, reactions
-from ifcaudit.checks.interface import CheckInput, CheckOutcome, Standard, load_standard
+from ifcaudit.checks.interface import CheckInput, CheckOutcome, Standard, distinct, load_standard
 from ifcaudit.checks.strength import Strength
 from ifcaudit.loadpath.beam_loads import with_uniform
 from ifcaudit.model.audit import Check, CheckName
@@ -75,7 +75,9 @@ def check_beams(items: Sequence[CheckInput], rules: RuleSet) -> list[CheckOutcom
     standard = load_standard(rules.steel_method)
     problems = [_problem(item, standard) for item in items]
     ready = [index for index, problem in enumerate(problems) if not problem]
-    outcomes = dict(zip(ready, _check_ready([items[index] for index in ready], rules, standard), strict=True))
+    different, places = distinct([items[index] for index in ready])
+    checked = _check_ready(different, rules, standard)
+    outcomes = {index: checked[place] for index, place in zip(ready, places, strict=True)}
     return [outcomes.get(index, CheckOutcome(problem=problem)) for index, problem in enumerate(problems)]
 
 

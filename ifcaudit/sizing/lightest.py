@@ -16,8 +16,8 @@ from functools import lru_cache
 import numpy as np
 from numpy.typing import NDArray
 
-from ifcaudit.analysis.simple_beam import deflection, envelope
-from ifcaudit.checks.interface import CheckInput, Standard, load_standard
+from ifcaudit.analysis.simple_beam import deflection, envelope, reactions
+from ifcaudit.checks.interface import CheckInput, Standard, distinct, load_standard
 from ifcaudit.checks.verdict import (
     QUARTERS,
     check_beams,
@@ -28,7 +28,7 @@ from ifcaudit.checks.verdict import (
 )
 from ifcaudit.model.audit import CheckName
 from ifcaudit.model.building import BendingAxis
-from ifcaudit.model.loads import FloatArray, LoadCase
+from ifcaudit.model.loads import BeamLoads, FloatArray, LoadCase
 from ifcaudit.model.material import Material
 from ifcaudit.model.section import Section, SectionKind, SectionTable, section_table
 from ifcaudit.rulebook.records import RuleSet
@@ -44,7 +44,7 @@ BOUND_SLACK = 1e-6
 """Part by which a bound may miss, so that rounding never excludes a section that passes."""
 LENGTH_STEP = 0.01
 """Unbraced lengths are rounded down to this in the comparison of the whole catalogue [m]."""
-MOST_VALUES = 400_000
+MOST_VALUES = 60_000
 """Largest array of the comparison."""
 
 BoolArray = NDArray[np.bool_]
@@ -93,8 +93,9 @@ def size_beams(items: Sequence[CheckInput], rules: RuleSet, series_of: Sequence[
             missing = Sizing(findings=(f"not sized: the {name} series holds no {kind.value} sections",))
             sized.update(dict.fromkeys(rows, missing))
             continue
-        group = _Group([items[row] for row in rows], candidates, rules, standard)
-        sized.update(zip(rows, group.sizings(name), strict=True))
+        different, places = distinct([items[row] for row in rows])
+        found = _Group(different, candidates, rules, standard).sizings(name)
+        sized.update({row: found[place] for row, place in zip(rows, places, strict=True)})
     return [sized[index] for index in range(len(items))]
 
 
@@ -162,7 +163,7 @@ class _Group:
         self.loads = [item.loads for item in items]
         self.spans = np.array([item.loads.span for item in items])
         self.weights = candidates.table.mass_per_length * standard_gravity()
-        self.factors = strength_factors(items, rules)
+        self.factors = _distinct(strength_factors(items, rules), self.loads)
         self.forces = envelope(self.loads, self.factors)
         self.surely_strong, self.maybe_strong = self._strong()
         self.surely_stiff, self.maybe_stiff = self._stiff()
@@ -304,6 +305,20 @@ class _Group:
             for_both=None if both is None else sections[both],
             findings=tuple(missing),
         )
+
+
+def _distinct(factors: FloatArray, loads: Sequence[BeamLoads]) -> FloatArray:
+    """Leave out load combinations that differ from another only in loads which act on none of the beams.
+
+    Args:
+        factors: Shape (beams, combinations, CASE_COUNT).
+        loads: Of each beam.
+    """
+    acting = (reactions(loads) != 0.0).any(axis=(0, 1))
+    acting[LoadCase.DEAD] = True  # self-weight
+    rows = factors[:, :, acting].transpose(1, 0, 2).reshape(factors.shape[1], -1)
+    _, kept = np.unique(rows, axis=0, return_index=True)
+    return factors[:, np.sort(kept)]
 
 
 def _first(passes: BoolArray) -> list[int | None]:

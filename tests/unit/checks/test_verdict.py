@@ -178,6 +178,33 @@ def test_a_batch_gives_what_each_beam_gives() -> None:
             )
 
 
+@pytest.mark.parametrize(
+    "change",
+    [
+        {"section": SECTIONS["W16X26"]},
+        {"material": steel(36)},
+        {"loads": uniform(8.0, 9.1e3, LoadCase.LIVE)},
+        {"loads": uniform(8.1, 9e3, LoadCase.LIVE)},
+        {"loads": loads(8.0, points=[(4.0, 60e3)], case=LoadCase.LIVE)},
+        {"axis": BendingAxis.FLAT},
+        {"continuously_braced": True},
+        {"braced_positions": (4.0,)},
+        {"is_roof": True},
+        {"live_load_factor": 0.9},
+    ],
+    ids=lambda change: next(iter(change)),
+)
+def test_equal_beams_are_checked_once_and_others_apart(change: dict[str, object]) -> None:
+    """Beams that repeat share one outcome; one that differs in a single input gets its own."""
+    item = CheckInput(section=SECTIONS["W18X50"], material=STEEL, loads=uniform(8.0, 9e3, LoadCase.LIVE))
+    same = replace(item, loads=uniform(8.0, 9e3, LoadCase.LIVE))
+    other = replace(item, **change)  # type: ignore[arg-type]
+    outcomes = check_beams([item, other, same], RULES)
+    assert outcomes[0] is outcomes[2]
+    assert outcomes[0] != outcomes[1]
+    assert outcomes[1].checks == check_beams([other], RULES)[0].checks
+
+
 def test_live_load_reduction() -> None:
     """A factor of 0.7 takes reducible live load down in strength and deflection, and leaves the other live load."""
     span = 8.0
