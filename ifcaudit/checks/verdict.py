@@ -88,6 +88,12 @@ def _problem(item: CheckInput, standard: Standard) -> str:
             f"it is of {family.value}, for which the rule set has no method: check it by hand, "
             "or use a rule set that covers it"
         )
+    material = item.material
+    if not np.isfinite([material.yield_strength, material.modulus_of_elasticity]).all():
+        return (
+            f"grade {material.grade} has no yield strength or modulus of elasticity: "
+            "add both to the grade in the rule set's materials file"
+        )
     return standard.not_covered(item.section, item.axis)
 
 
@@ -97,6 +103,7 @@ def _check_ready(items: Sequence[CheckInput], rules: RuleSet, standard: Standard
     loads = [with_uniform(item.loads, self_weight(item)) for item in items]
     factors = strength_factors(items, rules)
     forces = envelope(loads, factors)
+    unfit = unfit_forces(forces)
     deflections = _deflections(items, loads, rules)
     outcomes: dict[int, CheckOutcome] = {}
     for rows in _alike(items):
@@ -109,7 +116,9 @@ def _check_ready(items: Sequence[CheckInput], rules: RuleSet, standard: Standard
         flexures = _flexures(group, segments, rules, standard)
         shears = _shears(group, forces.shear[rows], forces.shear_position[rows], rules, standard)
         for row, flexure, shear in zip(rows.tolist(), flexures, shears, strict=True):
-            if flexure is None or shear is None:
+            if unfit[row]:
+                outcomes[row] = CheckOutcome(problem=unfit[row])
+            elif flexure is None or shear is None:
                 outcomes[row] = CheckOutcome(problem=_slender(items[row]))
             else:
                 outcomes[row] = CheckOutcome(checks=(flexure, shear, *deflections[row]))
@@ -125,6 +134,21 @@ def _alike(items: Sequence[CheckInput]) -> Iterator[NDArray[np.int64]]:
     for rows in groups.values():
         for first in range(0, len(rows), TOGETHER):
             yield np.array(rows[first : first + TOGETHER], dtype=np.int64)
+
+
+def unfit_forces(forces: Forces) -> list[str]:
+    """Say of each beam why its forces are outside what is checked; empty when they are inside."""
+    finite = np.asarray((np.isfinite(forces.moment) & np.isfinite(forces.shear)).all(axis=1))
+    # Hogging below this is rounding.
+    hogs = np.asarray((forces.hogging > 1e-6 * (forces.moment + forces.shear) + 1e-6).any(axis=1))
+    return [
+        ""
+        if known and not upwards
+        else "loads act upwards on it, so that its bottom flange is compressed: check it by hand"
+        if known
+        else "its loads are not finite numbers: check the geometry and the weights of the slabs that it carries"
+        for known, upwards in zip(finite.tolist(), hogs.tolist(), strict=True)
+    ]
 
 
 def _slender(item: CheckInput) -> str:

@@ -25,6 +25,7 @@ from ifcaudit.checks.verdict import (
     service_factors,
     strength_factors,
     unbraced_segments,
+    unfit_forces,
 )
 from ifcaudit.model.audit import CheckName
 from ifcaudit.model.building import BendingAxis
@@ -167,6 +168,9 @@ class _Group:
         self.forces = envelope(self.loads, self.factors)
         self.surely_strong, self.maybe_strong = self._strong()
         self.surely_stiff, self.maybe_stiff = self._stiff()
+        self.unfit = unfit_forces(self.forces)
+        for passes in (self.surely_strong, self.maybe_strong, self.surely_stiff, self.maybe_stiff):
+            passes[[bool(reason) for reason in self.unfit]] = False
 
     def _chunks(self, values_per_beam: int) -> Iterator[slice]:
         step = max(1, MOST_VALUES // values_per_beam)
@@ -264,7 +268,10 @@ class _Group:
         while self._check_open():
             pass
         strong, stiff, both = (_first(maybe) for _, maybe in self._targets())
-        return [self._sizing(series, *chosen) for chosen in zip(strong, stiff, both, strict=True)]
+        return [
+            Sizing(findings=(f"not sized: {reason}",)) if reason else self._sizing(series, *chosen)
+            for reason, *chosen in zip(self.unfit, strong, stiff, both, strict=True)
+        ]
 
     def _targets(self) -> tuple[tuple[BoolArray, BoolArray], ...]:
         """What surely passes and what may, for strength, for stiffness and for both."""

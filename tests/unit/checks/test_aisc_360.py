@@ -125,6 +125,15 @@ def test_minor_axis_of_a_noncompact_shape() -> None:
     assert nominal(section, axis=BendingAxis.FLAT) == pytest.approx(by_hand, rel=1e-12)
 
 
+def test_minor_axis_of_a_slender_shape() -> None:
+    """F6-3 and F6-4 by hand: flanges of 30 at 50 ksi, F_cr = 0.70 E / 30²; F6-2 meets them at 1.0 sqrt(E/F_y)."""
+    slender = replace(SECTIONS["W14X90"], flange_slenderness=30.0)
+    by_hand = 0.70 * E / 900 * slender.elastic_modulus_minor
+    assert nominal(slender, axis=BendingAxis.FLAT) == pytest.approx(by_hand, rel=1e-12)
+    at_limit = replace(slender, flange_slenderness=ROOT)
+    assert nominal(at_limit, axis=BendingAxis.FLAT) == pytest.approx(0.7 * F_Y * slender.elastic_modulus_minor)
+
+
 def test_solid_bar_by_hand() -> None:
     """F11 for a bar 200 mm deep and 40 mm thick, in its three ranges of L_b d / t²."""
     bar = drawn(SectionKind.RECTANGLE, 0.2, 0.04)
@@ -165,6 +174,20 @@ def test_shapes_outside_the_catalogue_take_the_limits_of_welded_ones() -> None:
     stocky = replace(SECTIONS["W18X50"], family="")
     assert float(shear_strength(SECTIONS["W18X50"], steel(), 0.0, FACTORS).factor) == 1.0
     assert float(shear_strength(stocky, steel(), 0.0, FACTORS).factor) == 0.9
+
+
+@pytest.mark.parametrize(
+    "section",
+    [
+        replace(SECTIONS["W18X50"], web_slenderness=3.75 * ROOT),
+        replace(SECTIONS["C10X30"], flange_slenderness=0.379 * ROOT),
+        replace(SECTIONS["HSS8X8X1/2"], web_slenderness=5.69 * ROOT),
+        replace(SECTIONS["HSS16.000X0.500"], flange_slenderness=0.449 * E / F_Y),
+    ],
+)
+def test_clauses_reach_up_to_their_limits(section: Section) -> None:
+    """Just inside the limits of Table B4.1b and of F8 there is a strength."""
+    assert nominal(section) > 0.0
 
 
 @pytest.mark.parametrize(
@@ -218,3 +241,24 @@ def test_shear_of_solids_by_hand() -> None:
     assert float(shear_strength(round_bar, steel(), 0.0, FACTORS).nominal) == pytest.approx(
         0.6 * F_Y * pi * 0.01 / 4 * 3 / 4
     )
+
+
+@pytest.mark.parametrize("slenderness", [20.0, 32.0, 60.0])
+def test_shear_of_flanges_by_hand(slenderness: float) -> None:
+    """G6 with k_v = 1.2 in the three ranges of C_v2 (G2-9 to G2-11), 29 and 36 being their limits at 50 ksi."""
+    section = replace(SECTIONS["W14X90"], flange_slenderness=slenderness)
+    ratio = slenderness / sqrt(1.2 * 29_000 / 50)
+    by_hand = {20.0: 1.0, 32.0: 1.10 / ratio, 60.0: 1.51 / ratio**2}[slenderness]
+    plain = 0.6 * F_Y * 2 * section.width * section.flange_thickness
+    strength = shear_strength(section, steel(), 0.0, FACTORS, BendingAxis.FLAT)
+    assert float(strength.nominal) == pytest.approx(plain * by_hand, rel=1e-12)
+
+
+@pytest.mark.parametrize(("slenderness", "shear_span"), [(220.0, 1.0), (220.0, 40.0), (250.0, 2.0)])
+def test_shear_of_thin_round_sections_by_hand(slenderness: float, shear_span: float) -> None:
+    """G5-2a and G5-2b: the larger of 1.60 E / (sqrt(L_v/D) (D/t)^(5/4)) and 0.78 E / (D/t)^(3/2), up to 0.6 F_y."""
+    section = replace(SECTIONS["HSS16.000X0.375"], flange_slenderness=slenderness)
+    with_length = 1.60 * E / (sqrt(shear_span / section.depth) * slenderness**1.25)
+    critical = min(max(with_length, 0.78 * E / slenderness**1.5), 0.6 * F_Y)
+    strength = shear_strength(section, steel(), shear_span, FACTORS)
+    assert float(strength.nominal) == pytest.approx(critical * section.area / 2, rel=1e-12)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import replace
 from itertools import pairwise
-from math import sqrt
+from math import nan, sqrt
 
 import numpy as np
 import pytest
@@ -21,6 +21,7 @@ from ifcaudit.model.section import ProfileShape, SectionKind
 from ifcaudit.rulebook.loader import load_rules
 from ifcaudit.rulebook.records import RuleSet
 from ifcaudit.rulebook.section_properties import section_from_dimensions
+from ifcaudit.sizing.lightest import Sizing, size_beams
 
 RULES = load_rules()
 SECTIONS = {section.designation: section for part in RULES.catalogue.series.values() for section in part}
@@ -336,6 +337,37 @@ def test_inclined_beam_is_not_checked() -> None:
     """A purlin turned with its roof bends about both axes, which no check here covers."""
     item = CheckInput(section=SECTIONS["C10X30"], material=STEEL, loads=loads(6.0), axis=BendingAxis.INCLINED)
     assert "bends about both axes" in outcome_of(item).problem
+
+
+def test_grade_without_strength_is_not_checked() -> None:
+    """A steel grade without a yield strength is named, with the place to supply it."""
+    unknown = replace(STEEL, grade="Q999", yield_strength=nan)
+    outcome = outcome_of(CheckInput(section=SECTIONS["W18X50"], material=unknown, loads=loads(6.0)))
+    assert outcome.problem == (
+        "grade Q999 has no yield strength or modulus of elasticity: "
+        "add both to the grade in the rule set's materials file"
+    )
+
+
+@pytest.mark.parametrize(
+    ("carried", "problem"),
+    [
+        (
+            uniform(6.0, -20e3, LoadCase.LIVE),
+            "loads act upwards on it, so that its bottom flange is compressed: check it by hand",
+        ),
+        (
+            uniform(6.0, nan, LoadCase.DEAD),
+            "its loads are not finite numbers: check the geometry and the weights of the slabs that it carries",
+        ),
+    ],
+)
+def test_loads_outside_the_method_are_not_checked(carried: BeamLoads, problem: str) -> None:
+    """Uplift, and loads that are no numbers, never pass as adequate."""
+    for braced in (True, False):
+        item = CheckInput(section=SECTIONS["W18X50"], material=STEEL, loads=carried, continuously_braced=braced)
+        assert outcome_of(item).problem == problem
+        assert size_beams([item], RULES, ["W"]) == [Sizing(findings=(f"not sized: {problem}",))]
 
 
 def test_nothing_to_check() -> None:

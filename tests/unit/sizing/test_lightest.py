@@ -112,6 +112,58 @@ def test_same_as_checking_one_by_one_where_dead_load_counts() -> None:
         assert names(sizing) == one_by_one(item, "W", rules)
 
 
+@pytest.mark.parametrize(
+    ("section", "span", "governing"),
+    [
+        ("W16X26", 7.0, CheckName.FLEXURE),
+        ("W24X55", 9.0, CheckName.FLEXURE),
+        ("W36X135", 40.0, CheckName.FLEXURE),
+        ("W16X26", 1.0, CheckName.SHEAR),
+        ("W36X135", 2.0, CheckName.SHEAR),
+        ("W21X44", 14.0, CheckName.LIVE_DEFLECTION),
+    ],
+)
+@pytest.mark.parametrize("braced", [True, False])
+def test_same_as_checking_one_by_one_at_the_edge(
+    section: str, span: float, governing: CheckName, *, braced: bool
+) -> None:
+    """At a load that uses a section up to one part in ten million more or less, nothing is rounded its way."""
+    unit = CheckInput(
+        section=SECTIONS[section],
+        material=STEEL,
+        loads=loads(span, [(0, span, 1.0, 1.0)], case=LoadCase.LIVE),
+        continuously_braced=braced,
+        braced_positions=(span / 4, span / 2, 3 * span / 4),
+    )
+
+    def at(intensity: float) -> CheckInput:
+        return replace(unit, loads=loads(span, [(0, span, intensity, intensity)], case=LoadCase.LIVE))
+
+    def utilization(intensity: float) -> float:
+        checks = {check.name: check.utilization for check in check_beams([at(intensity)], RULES)[0].checks}
+        return checks[governing]
+
+    # Utilization is a straight line over the load while 1.2 D + 1.6 L governs.
+    low, high = utilization(1e4), utilization(2e4)
+    full = 1e4 + (1.0 - low) / (high - low) * 1e4
+    assert utilization(full) == pytest.approx(1.0, abs=1e-9)
+    items = [at(full * (1.0 + change)) for change in (-1e-7, 1e-7)]
+    found = [names(sizing) for sizing in size_beams(items, RULES, ["W", "W"])]
+    assert found == [one_by_one(item, "W") for item in items]
+
+
+def test_self_weight_counts_in_every_combination() -> None:
+    """Of beams that carry only themselves 1.4 D decides, in whatever order a rule set lists its combinations."""
+    rules = replace(RULES, strength_combinations=RULES.strength_combinations[::-1])
+    items = [
+        CheckInput(section=SECTIONS["W18X50"], material=STEEL, loads=loads(span), continuously_braced=True)
+        for span in np.linspace(37.0, 42.0, 11)
+    ]
+    found = [names(sizing) for sizing in size_beams(items, rules, ["W"] * len(items))]
+    assert found == [one_by_one(item, "W") for item in items]
+    assert len({strength for strength, _, _ in found}) > 1
+
+
 @pytest.mark.parametrize("seed", range(3))
 def test_the_section_found_passes_and_every_lighter_one_fails(seed: int) -> None:
     """What is proposed passes all checks of the audit with its own weight; no lighter section of the series does."""
