@@ -81,8 +81,10 @@ _NOT_A_PRESSURE = 'is not a unit of pressure; write a pressure such as "50 psf",
         ("2,4 kPa", '--live-load "2,4 kPa": write the number with a decimal point and no thousands separators'),
         (
             "1e999 psf",
-            ('--live-load "1e999 psf": the number is not finite; '
-            'write a pressure such as "50 psf", "2.4 kPa", "2.4 kN/m2"'),
+            (
+                '--live-load "1e999 psf": the number is not finite; '
+                'write a pressure such as "50 psf", "2.4 kPa", "2.4 kN/m2"'
+            ),
         ),
     ],
 )
