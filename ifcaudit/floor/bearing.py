@@ -61,7 +61,9 @@ def bearing_lines(
         lines = [_beam_line(item) for item in framed]
         tree = STRtree([LineString([line.start, line.end]) for line in lines])
         reach = max(line.half_width for line in lines) + SIDE_REACH
-        for stack_index, beam_index in zip(*tree.query(plans, predicate="dwithin", distance=reach), strict=True):
+        stack_indices, beam_indices = tree.query(plans, predicate="dwithin", distance=reach)
+        near = _near_in_level(stacks, framed, stack_indices, beam_indices)
+        for stack_index, beam_index in zip(stack_indices[near].tolist(), beam_indices[near].tolist(), strict=True):
             found = _beam_bearing(outlines[stack_index], framed[beam_index], lines[beam_index])
             if found is not None:
                 result[stack_index].append(found)
@@ -75,6 +77,32 @@ def bearing_lines(
             if _wall_carries(stacks[stack_index], wall):
                 result[stack_index].append(_wall_line(wall))
     return tuple(tuple(sorted(lines, key=lambda item: item.line.global_id)) for lines in result)
+
+
+def _near_in_level(
+    stacks: Sequence[Stack],
+    framed: Sequence[FramedBeam],
+    stack_index: NDArray[np.int64],
+    beam_index: NDArray[np.int64],
+) -> NDArray[np.bool_]:
+    """Leave out beams of other storeys before anything is cut."""
+    low, high = np.array([_level_range(stack) for stack in stacks]).T
+    ends = np.array([[item.beam.start[2], item.beam.end[2]] for item in framed])
+    half = np.array([item.beam.half_vertical for item in framed])
+    tops, bottoms = ends.max(axis=1) + half, ends.min(axis=1) - half
+    return np.asarray(
+        (tops[beam_index] >= low[stack_index] - LARGEST_GAP) & (bottoms[beam_index] <= high[stack_index] + SURE_GAP)
+    )
+
+
+def _level_range(stack: Stack) -> tuple[float, float]:
+    """Lowest underside and highest top of a stack anywhere in its plan [m]."""
+    slab = stack.slab
+    x0, y0, x1, y1 = slab.plan.bounds
+    corners = [(x, y) for x in (x0, x1) for y in (y0, y1)]
+    low = min(slab.bottom_at(x, y) for x, y in corners) + min(0.0, stack.bottom - slab.bottom)
+    high = max(slab.top_at(x, y) for x, y in corners) + max(0.0, stack.top - slab.top)
+    return low, high
 
 
 def _beam_line(item: FramedBeam) -> SupportLine:

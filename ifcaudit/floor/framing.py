@@ -17,6 +17,7 @@ from shapely import LineString, Point, Polygon, STRtree
 
 from ifcaudit.model.building import Beam, PlanArea, VerticalKind, VerticalSupport
 from ifcaudit.model.framing import Carrier, EndSupport, FramedBeam
+from ifcaudit.model.loads import FloatArray
 
 END_ZONE = 0.30
 """Part of the beam, measured from its end, in which a support counts as the end's own [m]."""
@@ -30,6 +31,8 @@ LEAST_ANGLE_SINE = 0.17
 """Sine of the angle under which two beams count as parallel: neither carries the other (10 degrees)."""
 LEAST_OVERLAP = 0.25
 """Part of a beam's depth that must lie within the depth of the member it frames into."""
+FLOOR_ABOVE = 0.45
+"""A column or wall whose foot is this far above a beam's top may stand on it through the floor [m]."""
 SEARCH_RADIUS = 3.0
 """How far to look for the candidate named in a message about an unsupported end [m]."""
 
@@ -99,21 +102,38 @@ def frame_beams(beams: Sequence[Beam], supports: Sequence[VerticalSupport]) -> t
     reach = np.array(
         [axis.strip(-LARGEST_GAP, axis.length + LARGEST_GAP, max(axis.beam.width, 0.02) / 2) for axis in axes]
     )
+    lows, highs = _levels([axis.beam for axis in axes])
     vertical: dict[int, list[VerticalSupport]] = defaultdict(list)
     if supports:
         tree = STRtree([support.footprint for support in supports])
-        for beam_index, support_index in zip(*tree.query(reach, predicate="intersects"), strict=True):
-            vertical[int(beam_index)].append(supports[int(support_index)])
+        beam_index, support_index = tree.query(reach, predicate="intersects")
+        bottoms = np.array([support.bottom for support in supports])[support_index]
+        tops = np.array([support.top for support in supports])[support_index]
+        near = (bottoms <= highs[beam_index] + FLOOR_ABOVE) & (tops >= lows[beam_index] - BEARING_TOLERANCE)
+        for index, other in zip(beam_index[near].tolist(), support_index[near].tolist(), strict=True):
+            vertical[index].append(supports[other])
     boxes = STRtree([axis.box for axis in axes])
     crossing: dict[int, list[int]] = defaultdict(list)
-    for beam_index, other_index in zip(*boxes.query(reach, predicate="intersects"), strict=True):
-        if beam_index != other_index:
-            crossing[int(beam_index)].append(int(other_index))
+    beam_index, other_index = boxes.query(reach, predicate="intersects")
+    near = (
+        (beam_index != other_index)
+        & (lows[other_index] <= highs[beam_index])
+        & (highs[other_index] >= lows[beam_index] - BEARING_TOLERANCE)
+    )
+    for index, other in zip(beam_index[near].tolist(), other_index[near].tolist(), strict=True):
+        crossing[index].append(other)
     neighbours = _Neighbours(axes, supports)
     return tuple(
         _frame(axis, vertical[index], [axes[other] for other in crossing[index]], neighbours)
         for index, axis in enumerate(axes)
     )
+
+
+def _levels(beams: Sequence[Beam]) -> tuple[FloatArray, FloatArray]:
+    """Lowest and highest level of each beam [m]: elements of other storeys are left out by them early."""
+    axis = np.array([[beam.start[2], beam.end[2]] for beam in beams])
+    half = np.array([beam.half_vertical for beam in beams])
+    return axis.min(axis=1) - half, axis.max(axis=1) + half
 
 
 def _frame(
@@ -275,7 +295,7 @@ def _stands_on(axis: _Axis, support: VerticalSupport) -> bool:
         return False
     station = 0.5 * (first + last)
     top = axis.beam.top_at(station)
-    return top - BEARING_TOLERANCE <= support.bottom <= top + 0.45
+    return top - BEARING_TOLERANCE <= support.bottom <= top + FLOOR_ABOVE
 
 
 def _carried_below(axis: _Axis, standing: VerticalSupport, contacts: Sequence[_Contact]) -> bool:
