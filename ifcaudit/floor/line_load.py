@@ -20,8 +20,8 @@ from ifcaudit.model.loads import FloatArray
 
 LEAST_SINE = 0.05
 """Load cannot travel along the line it is meant to reach."""
-SHORTEST = 1e-9
-"""Stations nearer than this are one [m]."""
+SHORTEST = 1e-7
+"""Stations nearer than this are one; a hundred times what survey coordinates leave uncertain [m]."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)

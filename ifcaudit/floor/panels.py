@@ -4,10 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from itertools import pairwise
 from math import hypot
 
 import numpy as np
 import shapely
+from numpy.typing import NDArray
 from shapely import LineString, Point, Polygon, STRtree
 from shapely.geometry.base import BaseGeometry
 
@@ -23,6 +25,8 @@ PARALLEL_SINE = 0.17
 """Sine of the angle below which an edge runs along a support line (10 degrees)."""
 ON_LINE = 1e-4
 """A cut edge lies this near to the line that cut it [m]."""
+SHORTEST_PIECE = 1e-6
+"""An edge is not divided nearer to its end than this [m]."""
 NODING_GRID = 1e-9
 """Coordinates, taken from the slab's own middle, are rounded to this where lines cross [m]."""
 
@@ -56,16 +60,19 @@ def cut_into_panels(plan: PlanArea, supports: Sequence[SupportLine]) -> list[Pan
     Returns:
         Panels that cover the slab once.
     """
-    lines = drawn_on(plan, supports)
-    cutting = [LineString([line.start, line.end]) for line in lines]
+    holding = drawn_on(plan, supports)
+    # Every line is cut a little further than it holds, so that lines stopping short of one another close panels.
+    cutting = [
+        LineString([line.start, line.end]) for line in (_lengthened(line, OVERSHOOT, OVERSHOOT) for line in holding)
+    ]
     edges = shapely.unary_union([plan.boundary, *cutting], grid_size=NODING_GRID)
     polygons = [part for part in shapely.get_parts(shapely.polygonize([edges])) if part.area > 0.0]
     shapely.prepare(plan)
     inside = [polygon for polygon in polygons if plan.contains(polygon.representative_point())]
-    outlines = [_edges(polygon) for polygon in inside]
-    if not outlines:
+    if not inside:
         return []
-    holders = _holders(np.concatenate(outlines), supports, lines)
+    outlines = _split_at_line_ends([_edges(polygon) for polygon in inside], [*supports, *holding])
+    holders = _holders(np.concatenate(outlines), supports, holding)
     panels, row = [], 0
     for polygon, outline in zip(inside, outlines, strict=True):
         panels.append(Panel(polygon=polygon, edges=outline, holders=tuple(holders[row : row + len(outline)].tolist())))
@@ -79,8 +86,58 @@ def _edges(polygon: Polygon) -> FloatArray:
     return np.concatenate([np.stack([ring[:-1], ring[1:]], axis=1) for ring in rings])
 
 
+def _split_at_line_ends(outlines: Sequence[FloatArray], supports: Sequence[SupportLine]) -> list[FloatArray]:
+    """Divide edges where a support line along them begins or ends, so that each piece has one holder all along."""
+    if not supports:
+        return list(outlines)
+    edges = np.concatenate(outlines)
+    tree = STRtree([LineString([line.start, line.end]) for line in supports])
+    edge_index, line_index = tree.query(shapely.linestrings(edges), predicate="dwithin", distance=_reach(supports))
+    run = edges[:, 1] - edges[:, 0]
+    length = np.hypot(run[:, 0], run[:, 1])
+    along = run / length[:, None]
+    cuts: dict[int, list[float]] = {}
+    for ends in (np.array([line.start for line in supports]), np.array([line.end for line in supports])):
+        station = ((ends[line_index] - edges[edge_index, 0]) * along[edge_index]).sum(axis=1)
+        inner = (station > SHORTEST_PIECE) & (station < length[edge_index] - SHORTEST_PIECE)
+        inner &= _sines(edges[edge_index], line_index, supports) < PARALLEL_SINE
+        for edge, where in zip(edge_index[inner].tolist(), station[inner].tolist(), strict=True):
+            cuts.setdefault(edge, []).append(where)
+    result, first = [], 0
+    for outline in outlines:
+        pieces = [
+            piece
+            for number, edge in enumerate(outline, start=first)
+            for piece in _pieces(edge, along[number], sorted(cuts.get(number, ())))
+        ]
+        result.append(np.array(pieces))
+        first += len(outline)
+    return result
+
+
+def _pieces(edge: FloatArray, along: FloatArray, stations: Sequence[float]) -> list[FloatArray]:
+    if not stations:
+        return [edge]
+    points = [edge[0], *(edge[0] + station * along for station in stations), edge[1]]
+    pieces = [np.stack(pair) for pair in pairwise(points)]
+    return [piece for piece in pieces if np.hypot(*(piece[1] - piece[0])) > SHORTEST_PIECE] or [edge]
+
+
+def _reach(supports: Sequence[SupportLine]) -> float:
+    return EDGE_REACH + max(line.half_width for line in supports)
+
+
+def _sines(edges: FloatArray, line_index: NDArray[np.int64], supports: Sequence[SupportLine]) -> FloatArray:
+    """Sine of the angle between each edge and its line."""
+    starts = np.array([line.start for line in supports])[line_index]
+    run = np.array([line.end for line in supports])[line_index] - starts
+    edge = edges[:, 1] - edges[:, 0]
+    cross = np.abs(edge[:, 0] * run[:, 1] - edge[:, 1] * run[:, 0])
+    return np.asarray(cross / np.maximum(np.hypot(*edge.T) * np.hypot(*run.T), 1e-12))
+
+
 def drawn_on(plan: BaseGeometry, supports: Sequence[SupportLine]) -> list[SupportLine]:
-    """Draw every line on at both ends: a little, or as far as the next line or edge where it would end in the open."""
+    """Draw every line that ends in the open, amid a panel, on straight to the next line or edge."""
     lengthened = [_lengthened(line, OVERSHOOT, OVERSHOOT) for line in supports]
     shapes = [LineString([line.start, line.end]) for line in lengthened]
     tree = STRtree(shapes) if shapes else None
@@ -91,7 +148,7 @@ def drawn_on(plan: BaseGeometry, supports: Sequence[SupportLine]) -> list[Suppor
             _open_distance(end, other, index, plan, boundary, shapes, tree)
             for end, other in ((line.start, line.end), (line.end, line.start))
         ]
-        result.append(_lengthened(line, max(OVERSHOOT, more[0]), max(OVERSHOOT, more[1])))
+        result.append(_lengthened(line, more[0], more[1]))
     return result
 
 
@@ -128,11 +185,16 @@ def _lengthened(line: SupportLine, before: float, after: float) -> SupportLine:
     return replace(line, start=(x0 - before * ux, y0 - before * uy), end=(x1 + after * ux, y1 + after * uy))
 
 
-def _holders(edges: FloatArray, supports: Sequence[SupportLine], lines: Sequence[SupportLine]) -> np.ndarray:
+def _holders(edges: FloatArray, supports: Sequence[SupportLine], lines: Sequence[SupportLine]) -> NDArray[np.int64]:
     """Index of the support line that holds each edge, -1 for none.
 
-    An edge on a line itself comes first, then an edge on a line's extension, then an edge beside a line that runs
+    An edge on a line itself comes first, then an edge on the part drawn on, then an edge beside a line that runs
     along it; among equals the nearest line, then the first.
+
+    Args:
+        edges: Shape (edges, 2, 2) [m].
+        supports: Lines as they are.
+        lines: The same, drawn on.
     """
     best = np.full(len(edges), np.inf)
     holder = np.full(len(edges), -1, dtype=np.int64)
@@ -140,11 +202,11 @@ def _holders(edges: FloatArray, supports: Sequence[SupportLine], lines: Sequence
         return holder
     middles = edges.mean(axis=1)
     tree = STRtree([LineString([line.start, line.end]) for line in lines])
-    reach = EDGE_REACH + max(line.half_width for line in supports)
-    edge_index, line_index = tree.query(shapely.points(middles), predicate="dwithin", distance=reach)
+    edge_index, line_index = tree.query(shapely.points(middles), predicate="dwithin", distance=_reach(supports))
     if not len(edge_index):
         return holder
-    rank = _ranks(edges[edge_index], middles[edge_index], line_index, supports)
+    where = edges[edge_index], middles[edge_index], line_index
+    rank = np.fmin(_ranks(*where, supports), 1.0 + _ranks(*where, lines))
     order = np.lexsort((line_index, rank))[::-1]
     # Written from worst to best, so that the best of each edge is written last.
     best[edge_index[order]] = rank[order]
@@ -153,7 +215,7 @@ def _holders(edges: FloatArray, supports: Sequence[SupportLine], lines: Sequence
 
 
 def _ranks(
-    edges: FloatArray, middles: FloatArray, line_index: np.ndarray, supports: Sequence[SupportLine]
+    edges: FloatArray, middles: FloatArray, line_index: NDArray[np.int64], supports: Sequence[SupportLine]
 ) -> FloatArray:
     starts = np.array([line.start for line in supports])[line_index]
     ends = np.array([line.end for line in supports])[line_index]
@@ -164,13 +226,9 @@ def _ranks(
     from_start = middles - starts
     station = (from_start * along).sum(axis=1)
     offset = np.abs(from_start[:, 0] * along[:, 1] - from_start[:, 1] * along[:, 0])
-    edge = edges[:, 1] - edges[:, 0]
-    edge_length = np.hypot(edge[:, 0], edge[:, 1])
-    sine = np.abs(edge[:, 0] * along[:, 1] - edge[:, 1] * along[:, 0]) / np.maximum(edge_length, 1e-12)
+    sine = _sines(edges, line_index, supports)
     beyond = np.maximum(np.maximum(-station, station - length), 0.0)
     runs_along = sine < PARALLEL_SINE
     on_line = runs_along & (offset <= ON_LINE)
-    beside = runs_along & (offset <= half_widths + EDGE_REACH) & (beyond <= OVERSHOOT)
-    rank = np.where(beside, 2.0 + offset, np.inf)
-    rank = np.where(on_line, 1.0 + np.minimum(beyond, 1e6) * 1e-7, rank)
-    return np.where(on_line & (beyond <= ON_LINE), offset, rank)
+    beside = runs_along & (offset <= half_widths + EDGE_REACH) & (beyond <= ON_LINE)
+    return np.where(on_line & (beyond <= ON_LINE), offset, np.where(beside, 3.0 + offset, np.inf))

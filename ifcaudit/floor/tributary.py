@@ -19,9 +19,9 @@ from ifcaudit.model.building import PlanArea
 from ifcaudit.model.framing import SlabBehaviour, SlabLayout, Strip, SupportLine, Vector2
 from ifcaudit.model.loads import FloatArray
 
-SHORTEST = 1e-9
-"""Stations nearer than this are one [m]."""
-SLIVER = 1e-9
+SHORTEST = 1e-7
+"""Stations nearer than this are one; a hundred times what noding and survey coordinates leave uncertain [m]."""
+SLIVER = 1e-7
 """Parts smaller than this are rounding [m²]."""
 SAME_LENGTH = 1e-6
 """Relative difference below which two spans are equally long."""
@@ -257,9 +257,14 @@ class _Trapezoids:
         (s0, s1), (t0, t1) = self._s[edge].tolist(), self._t[edge].tolist()
         return float(t0 + (t1 - t0) * (station - s0) / (s1 - s0))
 
-    def preference(self) -> tuple[bool, bool, float]:
-        """Order of choice: spans between two supports first, then fewest unheld parts, then the shortest span."""
+    def preference(self) -> tuple[bool, bool, float, list[str]]:
+        """Order of choice: spans between two supports first, then fewest unheld parts, then the shortest span.
+
+        A square panel has no shorter span: there the supports of the lower GlobalIds are taken, which at least does
+        not depend on how the building is turned.
+        """
         total = both = unheld = moment = 0.0
+        holders = sorted({self._lines[holder].global_id for holder in self._holders_in_use()})
         for first, last, (a0, a1, b0, b1), lower, upper in self._pieces:
             chord = 0.5 * (b0 - a0 + b1 - a1)
             area = (last - first) * chord
@@ -271,11 +276,15 @@ class _Trapezoids:
             elif held == 0:
                 unheld += area
         if total <= 0.0:
-            return True, True, 0.0
+            return True, True, 0.0, holders
         spans = both >= LEAST_HELD_SHARE * total
         length = moment / both if both > 0.0 else 0.0
         rounded = float(f"{length:.6g}")
-        return not spans, unheld > 0.01 * total, rounded if spans else unheld / total
+        return not spans, unheld > 0.01 * total, rounded if spans else unheld / total, holders
+
+    def _holders_in_use(self) -> set[int]:
+        ends = {self._holders[edge] for *_, lower, upper in self._pieces for edge in (lower, upper)}
+        return {holder for holder in ends if holder >= 0}
 
     def parts(self) -> list[_Part]:
         """Give each trapezoid, or its halves, to the supports at its ends."""
