@@ -310,17 +310,24 @@ def _across(prism: Prism) -> _Solid | None:
 
 
 def _from_mesh(mesh: Mesh) -> _Solid | None:
-    """Axis of a mesh: its longest edge that runs within ten degrees of its longest extent."""
+    """Axis of a mesh: the direction most of its edge length runs in, within ten degrees of its longest extent.
+
+    Diagonals of triangles are longer than the edges beside them, but fewer of them are parallel.
+    """
     points = np.unique(np.round(mesh.vertices, 6), axis=0)
-    spread = points - points.mean(axis=0)
-    principal = np.linalg.svd(spread, full_matrices=False)[2][0]
+    principal = np.linalg.svd(points - points.mean(axis=0), full_matrices=False)[2][0]
     triangles = mesh.vertices[mesh.faces]
     edges = (triangles - np.roll(triangles, 1, axis=1)).reshape(-1, 3)
+    edges = edges * np.where(edges @ principal < 0.0, -1.0, 1.0)[:, None]
     lengths = np.linalg.norm(edges, axis=1)
-    aligned = np.abs(edges @ principal) > 0.985 * np.maximum(lengths, 1e-12)
+    aligned = (edges @ principal) > 0.985 * np.maximum(lengths, 1e-12)
     if aligned.any():
-        edge = edges[np.flatnonzero(aligned)[np.argmax(lengths[aligned])]]
-        principal = edge / np.linalg.norm(edge) * np.sign(edge @ principal)
+        directions = edges[aligned] / lengths[aligned, None]
+        _, group = np.unique(np.round(directions, 3), axis=0, return_inverse=True)
+        totals = np.bincount(group.ravel(), weights=lengths[aligned])
+        chosen = group.ravel() == totals.argmax()
+        principal = (directions[chosen] * lengths[aligned][chosen, None]).sum(axis=0)
+        principal = principal / np.linalg.norm(principal)
     axis = (float(principal[0]), float(principal[1]), float(principal[2]))
     return _from_points(points, axis, _MESH_SECTION, cut=mesh.cut)
 

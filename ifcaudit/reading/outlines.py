@@ -75,13 +75,11 @@ def _solid_or_hollow(outline: Polygon, width: float, depth: float) -> ProfileSha
         return None
     inner = Polygon(outline.interiors[0]) if outline.interiors else None
     if 4.0 * pi * outer.area / outer.length**2 > ROUND_COMPACTNESS:
-        diameter = (width + depth) / 2.0
+        diameter = _diameter(outer)
         if inner is None:
             return ProfileShape(kind=SectionKind.ROUND, depth=diameter, width=diameter)
-        hole = np.ptp(shapely.get_coordinates(inner), axis=0).mean()
-        return ProfileShape(
-            kind=SectionKind.ROUND_HOLLOW, depth=diameter, width=diameter, web_thickness=float((diameter - hole) / 2.0)
-        )
+        wall = (diameter - _diameter(inner)) / 2.0
+        return ProfileShape(kind=SectionKind.ROUND_HOLLOW, depth=diameter, width=diameter, web_thickness=wall)
     corner = sqrt(max(width * depth - outer.area, 0.0) / (4.0 - pi))
     if inner is not None and outer.area > 0.9 * width * depth:
         hole_width, hole_depth = np.ptp(shapely.get_coordinates(inner), axis=0)
@@ -98,6 +96,12 @@ def _solid_or_hollow(outline: Polygon, width: float, depth: float) -> ProfileSha
     if inner is None and outer.area > FULL * width * depth:
         return ProfileShape(kind=SectionKind.RECTANGLE, depth=depth, width=width)
     return None
+
+
+def _diameter(circle: Polygon) -> float:
+    """Diameter of a circle drawn as a polygon: its corners lie on the circle, its sides do not."""
+    corners = shapely.get_coordinates(circle.exterior)[:-1] - shapely.get_coordinates(circle.centroid)
+    return float(2.0 * np.hypot(corners[:, 0], corners[:, 1]).mean())
 
 
 def _open_section(outline: Polygon) -> ProfileShape | None:
