@@ -83,7 +83,7 @@ def print_summary(audit: Audit, files: Sequence[Path], units: str, console: Cons
     _print_worst(audit, units, console)
     _print_not_checked(audit, console)
     _print_assumptions(audit, console)
-    _print_balance(audit, console)
+    _print_balance(audit, units, console)
     for finding in audit.findings:
         console.print(Text(f"Finding: {finding}"))
     if files:
@@ -147,19 +147,22 @@ def _print_assumptions(audit: Audit, console: Console) -> None:
         console.print(Text(f"Assumed for {assumption.beams} {noun}: {assumption.text}. {assumption.remedy}".rstrip()))
 
 
-def _print_balance(audit: Audit, console: Console) -> None:
+def _print_balance(audit: Audit, units: str, console: Console) -> None:
     balance = audit.load_balance
+    force, area = table_factor("force", units), table_factor("area", units)
+    force_unit, area_unit = (table_suffix(quantity, units).strip("_") for quantity in ("force", "area"))
     for name, applied, arrived, stranded in (
         ("dead", balance.dead_applied, balance.dead_reaching_supports, balance.dead_unsupported),
         ("live", balance.live_applied, balance.live_reaching_supports, balance.live_unsupported),
     ):
         share = 100.0 * (applied - arrived) / applied if applied else 0.0
-        text = f"Load balance, {name}: {applied / 1e3:.1f} kN applied, {arrived / 1e3:.1f} kN reach columns and walls"
+        text = f"Load balance, {name}: {applied * force:.1f} {force_unit} applied, {arrived * force:.1f} reach supports"
         if abs(share) >= 0.005:
-            text += f" ({share:.2f} % short; {stranded / 1e3:.1f} kN at ends and slab parts that nothing carries)"
+            text += f" ({share:.2f} % short; {stranded * force:.1f} at ends and slab parts that nothing carries)"
         console.print(Text(text))
     console.print(
         Text(
-            f"Slab area: {balance.slab_area:.1f} m², of which {balance.unassigned_area:.1f} m² rest on no beam or wall"
+            f"Slab area: {balance.slab_area * area:.1f} {area_unit}, "
+            f"of which {balance.unassigned_area * area:.1f} rest on no beam or wall"
         )
     )
