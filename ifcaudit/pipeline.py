@@ -26,6 +26,7 @@ from ifcaudit.model.building import Beam, Building, Slab
 from ifcaudit.model.framing import FramedBeam
 from ifcaudit.model.loads import LoadCase
 from ifcaudit.model.material import MaterialText
+from ifcaudit.model.section import Section
 from ifcaudit.provenance import Sourced
 from ifcaudit.reading.building import read_building
 from ifcaudit.rulebook.identify import identify_material, identify_section, layer_density
@@ -34,6 +35,8 @@ from ifcaudit.rulebook.records import RuleSet
 from ifcaudit.sizing.lightest import size_beams
 
 ProgressStep = Callable[[str, int | None], None]
+BOX_TOLERANCE = 0.03
+"""Part by which the box of a mesh may differ from the section it is named after."""
 SHORTEST_PLAN_LENGTH = 0.05
 """A member shorter than this in plan is upright and carries no floor as a beam [m]."""
 
@@ -119,8 +122,22 @@ def identify(framed: FramedBeam, rules: RuleSet) -> Member:
         section=section.section,
         series=section.family,
         material=material.material,
-        problem=section.problem or material.problem,
+        problem=section.problem or _contradiction(beam, section.section) or material.problem,
         findings=(*section.findings, *material.findings),
+    )
+
+
+def _contradiction(beam: Beam, section: Sourced[Section] | None) -> str:
+    """A section known by name alone must at least fit the box of its mesh: names in real exports are often wrong."""
+    if section is None or beam.profile is not None:
+        return ""
+    named = section.value
+    drawn, listed = sorted((beam.height, beam.width)), sorted((named.depth, named.width))
+    if all(abs(a - b) <= BOX_TOLERANCE * b for a, b in zip(drawn, listed, strict=True)):
+        return ""
+    return (
+        f"named {named.designation} ({named.depth * 1000:.0f} x {named.width * 1000:.0f} mm) but drawn as a mesh of "
+        f"{beam.height * 1000:.0f} x {beam.width * 1000:.0f} mm: correct the one that is wrong in the model"
     )
 
 

@@ -423,11 +423,15 @@ def _result(path: _Path) -> BeamLoading:
     )
 
 
+SHORT_STRETCH = 0.05
+"""Part of a girder's span below which slab lying directly on it says nothing about its width."""
+
+
 def _tributary_width(path: _Path) -> float:
     """Direct area over its loaded length, plus half the mean length of the beams carried on either side."""
     width = sum(sum(spans) / len(spans) / 2.0 for spans in path.side_spans.values() if spans)
     length = sum(last - first for first, last in _merged(path.loaded))
-    if length > 0.0:
+    if length > (SHORT_STRETCH * path.span if width > 0.0 else 0.0):
         width += path.direct_area / length
     return width
 
