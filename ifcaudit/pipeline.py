@@ -12,21 +12,22 @@ from ifcaudit import assembly
 from ifcaudit.assembly import Judged
 from ifcaudit.checks.interface import CheckInput
 from ifcaudit.checks.verdict import check_beams
-from ifcaudit.floor.bearing import bearing_lines
+from ifcaudit.floor.bearing import bearing_lines, standing_walls
 from ifcaudit.floor.framing import frame_beams
 from ifcaudit.floor.stacking import stack_slabs
 from ifcaudit.floor.tributary import lay_out_slab
 from ifcaudit.loadpath.area_loads import area_load, mass_per_area
+from ifcaudit.loadpath.beam_loads import on_slope
 from ifcaudit.loadpath.members import Member
 from ifcaudit.loadpath.reduction import reduction_factor
 from ifcaudit.loadpath.slab_action import slab_behaviour
 from ifcaudit.loadpath.takedown import BeamLoading, LoadedSlab, take_down
 from ifcaudit.model.audit import Audit, BeamResult
-from ifcaudit.model.building import Beam, Building, Slab
+from ifcaudit.model.building import Beam, BendingAxis, Building, Slab
 from ifcaudit.model.framing import FramedBeam
 from ifcaudit.model.loads import LoadCase
 from ifcaudit.model.material import MaterialText
-from ifcaudit.model.section import Section
+from ifcaudit.model.section import Section, SectionKind
 from ifcaudit.provenance import Sourced
 from ifcaudit.reading.building import read_building
 from ifcaudit.rulebook.identify import identify_material, identify_section, layer_density
@@ -37,6 +38,8 @@ from ifcaudit.sizing.lightest import size_beams
 ProgressStep = Callable[[str, int | None], None]
 BOX_TOLERANCE = 0.03
 """Part by which the box of a mesh may differ from the section it is named after."""
+NOTABLE_SLOPE = 0.02
+"""Rise over run above which a beam is said to slope."""
 SHORTEST_PLAN_LENGTH = 0.05
 """A member shorter than this in plan is upright and carries no floor as a beam [m]."""
 
@@ -123,8 +126,18 @@ def identify(framed: FramedBeam, rules: RuleSet) -> Member:
         series=section.family,
         material=material.material,
         problem=section.problem or _contradiction(beam, section.section) or material.problem,
-        findings=(*section.findings, *material.findings),
+        findings=(*section.findings, *material.findings, *_remarks(beam)),
     )
+
+
+def _remarks(beam: Beam) -> tuple[str, ...]:
+    """What the checks leave out for this beam."""
+    remarks = []
+    if beam.cut:
+        remarks.append("its solid is cut (cope, notch or hole): the full section is checked, not what is left of it")
+    if abs(beam.rise) > NOTABLE_SLOPE * beam.plan_length:
+        remarks.append("it slopes: bending at right angles to it is checked, axial force is not")
+    return tuple(remarks)
 
 
 def _contradiction(beam: Beam, section: Sourced[Section] | None) -> str:
@@ -153,16 +166,17 @@ def lay_out_floors(
     suspended = [slab for slab in building.slabs if not slab.on_grade and not slab.unreadable]
     stacks, findings = stack_slabs(suspended, [mass_per_area(slab, density_of) for slab in suspended])
     lines = bearing_lines(stacks, framed, building.supports)
+    walls = standing_walls(stacks, building.supports)
     floors = []
     remarks = list(findings)
-    for stack, rests_on in zip(stacks, lines, strict=True):
+    for stack, rests_on, walls_on_it in zip(stacks, lines, walls, strict=True):
         layout = lay_out_slab(
             stack.slab.global_id,
             stack.slab.plan,
             [item.line for item in rests_on],
             slab_behaviour(stack, rules.materials),
         )
-        load = area_load(stack, rules, density_of)
+        load = area_load(stack, rules, density_of, walls_on_it)
         floors.append(LoadedSlab(stack=stack, load=load, lines=rests_on, layout=layout))
         remarks.extend(f"slab {stack.slab.name or stack.slab.global_id}: {text}" for text in layout.findings)
     return floors, tuple(remarks)
@@ -190,14 +204,16 @@ def check_input(loading: BeamLoading, rules: RuleSet) -> CheckInput:
     assert member.section is not None  # noqa: S101 — missing_input() has turned away members without
     assert member.material is not None  # noqa: S101 — as above
     assert loading.loads is not None  # noqa: S101 — as above
-    totals = loading.totals
+    totals, beam = loading.totals, member.beam
+    slope = beam.length / beam.plan_length
+    round_section = member.section.value.kind in {SectionKind.ROUND, SectionKind.ROUND_HOLLOW}
     return CheckInput(
         section=member.section.value,
         material=member.material.value,
-        loads=loading.loads,
-        axis=member.beam.bending,
+        loads=loading.loads if slope == 1.0 else on_slope(loading.loads, slope),
+        axis=BendingAxis.UPRIGHT if round_section else beam.bending,
         continuously_braced=loading.continuously_braced,
-        braced_positions=loading.braced,
+        braced_positions=tuple(position * slope for position in loading.braced),
         is_roof=bool(totals[LoadCase.LIVE] + totals[LoadCase.LIVE_UNREDUCED] <= 0.0),
         live_load_factor=reduction_factor(loading, rules),
     )

@@ -79,6 +79,23 @@ def bearing_lines(
     return tuple(tuple(sorted(lines, key=lambda item: item.line.global_id)) for lines in result)
 
 
+def standing_walls(stacks: Sequence[Stack], supports: Sequence[VerticalSupport]) -> tuple[int, ...]:
+    """Count the walls that stand on each stack: foot at its top, and most of the footprint over it."""
+    walls = [support for support in supports if support.kind is VerticalKind.WALL]
+    counts = [0] * len(stacks)
+    if not stacks or not walls:
+        return tuple(counts)
+    tree = STRtree([wall.footprint for wall in walls])
+    for index, number in zip(*tree.query([stack.slab.plan for stack in stacks], predicate="intersects"), strict=True):
+        stack, wall = stacks[index], walls[number]
+        x, y = wall.footprint.representative_point().coords[0]
+        top = stack.slab.top_at(x, y) + stack.top - stack.slab.top
+        on_top = stack.slab.top_at(x, y) - SURE_GAP <= wall.bottom <= top + SURE_GAP
+        if on_top and stack.slab.plan.intersection(wall.footprint).area > 0.5 * wall.footprint.area:
+            counts[index] += 1
+    return tuple(counts)
+
+
 def _near_in_level(
     stacks: Sequence[Stack],
     framed: Sequence[FramedBeam],

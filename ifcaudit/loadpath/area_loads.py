@@ -58,7 +58,7 @@ def mass_per_area(slab: Slab, density_of: DensityOf) -> float:
     return sum(layer.thickness * density_of(layer.material).value for layer in slab.layers)
 
 
-def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf) -> AreaLoad:
+def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf, standing_walls: int = 0) -> AreaLoad:
     """Add up the loads on one stack of slabs.
 
     Weight acts per surface area, live load and the superimposed allowance per plan area. A roof takes roof live load
@@ -68,6 +68,7 @@ def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf) -> AreaLoad:
         stack: The structural slab and what lies on it.
         rules: Loads where the model says nothing.
         density_of: Density of a layer's material, with its source.
+        standing_walls: Number of walls that stand on the floor; their weight is not taken down, and that is said.
     """
     slab, loads = stack.slab, rules.loads
     pressures = np.zeros(CASE_COUNT)
@@ -90,11 +91,23 @@ def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf) -> AreaLoad:
         inputs.append((name, _from_rules(value)))
     for owner in (slab, *(other for other, _ in stack.resting)):
         inputs.extend(_layer_inputs(owner, density_of))
+    if standing_walls:
+        inputs.append(("walls on the floor", _walls_allowed_for(slab, standing_walls)))
     return AreaLoad(
         slab=slab,
         pressures=pressures,
         patches=tuple(Patch(plan=part, dead=_weight(other, density_of)) for other, part in stack.resting),
         inputs=tuple(inputs),
+    )
+
+
+def _walls_allowed_for(slab: Slab, walls: int) -> Sourced[object]:
+    noun = "wall stands" if walls == 1 else "walls stand"
+    return Sourced(
+        value=walls,
+        source=Source.ASSUMED,
+        where=f"{walls} {noun} on {slab.name or slab.global_id}: taken to weigh no more than its area loads allow for",
+        remedy="Raise --superimposed-dead by their weight per floor area if they weigh more.",
     )
 
 

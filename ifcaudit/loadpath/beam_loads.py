@@ -132,3 +132,35 @@ def with_uniform(loads: BeamLoads, intensity: FloatArray) -> BeamLoads:
         point_positions=loads.point_positions,
         point_magnitudes=loads.point_magnitudes,
     )
+
+
+def on_slope(loads: BeamLoads, ratio: float) -> BeamLoads:
+    """The loads of a sloping beam at right angles to it, along its own length.
+
+    A vertical load w per plan length on a beam of slope length L/c, c the cosine of its slope, presses w c² per slope
+    length at right angles: the moment stays w L²/8, the deflection grows by 1/c².
+
+    Args:
+        loads: Vertical, in plan.
+        ratio: Slope length over plan length, 1/c.
+
+    Example:
+        >>> import numpy as np
+        >>> flat = BeamLoads(
+        ...     span=4.0,
+        ...     segment_positions=np.array([[0.0, 4.0]]),
+        ...     segment_intensities=np.ones((1, 2, CASE_COUNT)),
+        ...     point_positions=np.zeros(0),
+        ...     point_magnitudes=np.zeros((0, CASE_COUNT)),
+        ... )
+        >>> steep = on_slope(flat, 2.0)
+        >>> steep.span, float(steep.segment_intensities[0, 0, 0])
+        (8.0, 0.25)
+    """
+    return BeamLoads(
+        span=loads.span * ratio,
+        segment_positions=loads.segment_positions * ratio,
+        segment_intensities=loads.segment_intensities / ratio**2,
+        point_positions=loads.point_positions * ratio,
+        point_magnitudes=loads.point_magnitudes / ratio,
+    )

@@ -6,7 +6,7 @@ import pytest
 from helpers.scene import beam, column, slab, wall
 from shapely import box
 
-from ifcaudit.floor.bearing import BearingLine, bearing_lines
+from ifcaudit.floor.bearing import BearingLine, bearing_lines, standing_walls
 from ifcaudit.floor.framing import frame_beams
 from ifcaudit.floor.stacking import stack_slabs
 
@@ -70,3 +70,14 @@ def test_wall_below_carries_a_slab_and_a_thin_partition_does_not() -> None:
     stacks, _ = stack_slabs([slab("S", box(0, -3, 8, 3))], [360.0])
     walls = [wall("W", (0, 0), (8, 0), top=4.0), wall("P", (0, 1), (8, 1), top=4.0, thickness=0.08)]
     assert [line.line.global_id for line in bearing_lines(stacks, [], walls)[0]] == ["W"]
+
+
+def test_walls_standing_on_the_floor_are_counted_and_those_below_or_above_are_not() -> None:
+    """Only a wall whose foot is at the floor's top stands on it."""
+    stacks, _ = stack_slabs([slab("S", box(0, -3, 8, 3))], [360.0])
+    walls = [
+        wall("on it", (1, 1), (4, 1), bottom=4.15, top=7.0),
+        wall("below", (1, -1), (4, -1), bottom=0.0, top=4.0),
+        wall("next storey", (1, -2), (4, -2), bottom=7.5, top=10.0),
+    ]
+    assert standing_walls(stacks, walls) == (1,)

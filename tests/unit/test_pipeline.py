@@ -1,0 +1,83 @@
+"""What the pipeline decides between the stages."""
+
+from __future__ import annotations
+
+from math import cos, radians, sin
+from pathlib import Path
+from typing import Any
+
+import pytest
+from helpers.steel_models import SteelModel
+
+import ifcaudit
+from ifcaudit.model.audit import Audit, BeamResult, Status
+
+
+def roof(folder: Path, slope: float, *, wall_on_top: bool = False) -> Audit:
+    """Two W16X26 rafters 3 m apart, 8 m long in plan, on columns, under a slab parallel to them; x is along them."""
+    model = SteelModel()
+    angle = radians(slope)
+    rise = 8000.0 * sin(angle) / cos(angle)
+    up, along = (-sin(angle), 0.0, cos(angle)), (cos(angle), 0.0, sin(angle))
+    for number, y in enumerate((0.0, 3000.0)):
+        beam = model.extrusion(
+            model.i_profile(), 8000 / cos(angle), position=model.axes((0, y, 4000), along, (0, 1, 0))
+        )
+        model.element(beam, Name=f"R{number}")
+        for x, top in ((0.0, 4000.0), (8000.0, 4000.0 + rise)):
+            post = model.make(
+                "IfcRectangleProfileDef", ProfileType="AREA", ProfileName="",
+                Position=model.turned((1, 0)), XDim=200.0, YDim=200.0,
+            )  # fmt: skip
+            model.element(
+                model.extrusion(post, top, position=model.axes((x, y, 0))),
+                ifc_class="IfcColumn",
+                Name=f"C{number}{x:g}",
+            )
+    half = 199.39
+    origin = (half * up[0], 0.0, 4000.0 + half * up[2])
+    # Longer than the beams by 0.3 m at either end: a slab at right angles to a slope lies a little downhill of them.
+    last = 8000 / cos(angle) + 300
+    plan = model.outline([(-300, 0), (last, 0), (last, 3000), (-300, 3000)])
+    slab = model.extrusion(plan, 100, position=model.axes(origin, up, along))
+    model.element(slab, ifc_class="IfcSlab", Name="S", PredefinedType="FLOOR")
+    if wall_on_top:
+        block = model.outline([(2000, 1000), (5000, 1000), (5000, 1200), (2000, 1200)])
+        model.element(
+            model.extrusion(block, 2500, position=model.axes((0, 0, 4000 + half + 100))), ifc_class="IfcWall", Name="W"
+        )
+    path = folder / "roof.ifc"
+    model.file.write(str(path))
+    return ifcaudit.audit(path)
+
+
+def first(audit: Audit) -> BeamResult:
+    """The first beam."""
+    return audit.beams[0]
+
+
+def test_sloping_beam_deflects_by_its_own_length_and_says_that_axial_force_is_left_out(tmp_path: Path) -> None:
+    """At 15 degrees: moment from live load as in plan, deflection larger by 1/cos² (both over the plan load).
+
+    Live load acts per plan area, so that w is the same; 5 w L⁴ / 384 EI in plan becomes 5 (w c²)(L/c)⁴ / 384 EI.
+    """
+    level, steep = first(roof(tmp_path, 0.0)), first(roof(tmp_path, 15.0))
+    assert level.status in {Status.ADEQUATE, Status.INADEQUATE}, level.reason
+    assert level.live_deflection is not None
+    assert steep.live_load == pytest.approx(level.live_load)
+    assert steep.live_deflection == pytest.approx(level.live_deflection / cos(radians(15)) ** 2, rel=1e-6)
+    assert "it slopes: bending at right angles to it is checked, axial force is not" in steep.findings
+    assert not any("slopes" in finding for finding in level.findings)
+
+
+def test_wall_standing_on_the_floor_is_an_assumption_of_its_beams(tmp_path: Path) -> None:
+    """The weight of a wall amid the slab is not taken down; every beam of that floor says so, and what settles it."""
+    result = roof(tmp_path, 0.0, wall_on_top=True)
+    texts: list[Any] = [item for item in result.assumptions if item.text.startswith("walls on the floor")]
+    (assumption,) = texts
+    assert assumption.beams == 2
+    assert (
+        assumption.text
+        == "walls on the floor: 1 wall stands on S: taken to weigh no more than its area loads allow for"
+    )
+    assert assumption.remedy == "Raise --superimposed-dead by their weight per floor area if they weigh more."
