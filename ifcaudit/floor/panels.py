@@ -25,6 +25,8 @@ PARALLEL_SINE = 0.17
 """Sine of the angle below which an edge runs along a support line (10 degrees)."""
 ON_LINE = 1e-4
 """A cut edge lies this near to the line that cut it [m]."""
+WEAK = 10.0
+"""Rank from which an edge is held only by what lies a little beyond the end of a line."""
 SHORTEST_PIECE = 1e-6
 """An edge is not divided nearer to its end than this [m]."""
 NODING_GRID = 1e-9
@@ -39,11 +41,13 @@ class Panel:
         polygon: Outline.
         edges: Edges of all rings, outer counter-clockwise and holes clockwise: shape (edges, 2, 2) [m].
         holders: For each edge the index of the support line that holds it, or -1.
+        firm: For each edge, whether its holder really is there, not only a little beyond the holder's end.
     """
 
     polygon: Polygon
     edges: FloatArray
     holders: tuple[int, ...]
+    firm: tuple[bool, ...]
 
 
 def cut_into_panels(plan: PlanArea, supports: Sequence[SupportLine]) -> list[Panel]:
@@ -62,20 +66,24 @@ def cut_into_panels(plan: PlanArea, supports: Sequence[SupportLine]) -> list[Pan
     """
     holding = drawn_on(plan, supports)
     # Every line is cut a little further than it holds, so that lines stopping short of one another close panels.
-    cutting = [
-        LineString([line.start, line.end]) for line in (_lengthened(line, OVERSHOOT, OVERSHOOT) for line in holding)
-    ]
+    cuts = [_lengthened(line, OVERSHOOT, OVERSHOOT) for line in holding]
+    cutting = [LineString([line.start, line.end]) for line in cuts]
     edges = shapely.unary_union([plan.boundary, *cutting], grid_size=NODING_GRID)
     polygons = [part for part in shapely.get_parts(shapely.polygonize([edges])) if part.area > 0.0]
     shapely.prepare(plan)
     inside = [polygon for polygon in polygons if plan.contains(polygon.representative_point())]
     if not inside:
         return []
-    outlines = _split_at_line_ends([_edges(polygon) for polygon in inside], [*supports, *holding])
-    holders = _holders(np.concatenate(outlines), supports, holding)
+    outlines = _split_at_line_ends([_edges(polygon) for polygon in inside], [*supports, *holding, *cuts])
+    holders, firm = _holders(np.concatenate(outlines), supports, holding, cuts)
     panels, row = [], 0
     for polygon, outline in zip(inside, outlines, strict=True):
-        panels.append(Panel(polygon=polygon, edges=outline, holders=tuple(holders[row : row + len(outline)].tolist())))
+        rows = slice(row, row + len(outline))
+        panels.append(
+            Panel(
+                polygon=polygon, edges=outline, holders=tuple(holders[rows].tolist()), firm=tuple(firm[rows].tolist())
+            )
+        )
         row += len(outline)
     return panels
 
@@ -185,33 +193,41 @@ def _lengthened(line: SupportLine, before: float, after: float) -> SupportLine:
     return replace(line, start=(x0 - before * ux, y0 - before * uy), end=(x1 + after * ux, y1 + after * uy))
 
 
-def _holders(edges: FloatArray, supports: Sequence[SupportLine], lines: Sequence[SupportLine]) -> NDArray[np.int64]:
-    """Index of the support line that holds each edge, -1 for none.
+def _holders(
+    edges: FloatArray,
+    supports: Sequence[SupportLine],
+    holding: Sequence[SupportLine],
+    cuts: Sequence[SupportLine],
+) -> tuple[NDArray[np.int64], NDArray[np.bool_]]:
+    """Index of the support line that holds each edge, -1 for none, and whether it holds it firmly.
 
-    An edge on a line itself comes first, then an edge on the part drawn on, then an edge beside a line that runs
-    along it; among equals the nearest line, then the first.
+    An edge on a line itself comes first, then one on the part drawn on through the open, then one beside a line that
+    runs along it, and last, not firmly, one just beyond the end of a line: a slab that reaches a little past its
+    supports still rests on them, but such an edge must not decide how the slab spans. Among equals the nearest line
+    counts, then the first.
 
     Args:
         edges: Shape (edges, 2, 2) [m].
         supports: Lines as they are.
-        lines: The same, drawn on.
+        holding: The same, drawn on through the open.
+        cuts: The same, with what they were cut beyond their ends.
     """
     best = np.full(len(edges), np.inf)
     holder = np.full(len(edges), -1, dtype=np.int64)
     if not supports:
-        return holder
+        return holder, np.zeros(len(edges), dtype=np.bool_)
     middles = edges.mean(axis=1)
-    tree = STRtree([LineString([line.start, line.end]) for line in lines])
+    tree = STRtree([LineString([line.start, line.end]) for line in cuts])
     edge_index, line_index = tree.query(shapely.points(middles), predicate="dwithin", distance=_reach(supports))
-    if not len(edge_index):
-        return holder
-    where = edges[edge_index], middles[edge_index], line_index
-    rank = np.fmin(_ranks(*where, supports), 1.0 + _ranks(*where, lines))
-    order = np.lexsort((line_index, rank))[::-1]
-    # Written from worst to best, so that the best of each edge is written last.
-    best[edge_index[order]] = rank[order]
-    holder[edge_index[order]] = np.where(np.isfinite(rank[order]), line_index[order], -1)
-    return np.where(np.isfinite(best), holder, -1)
+    if len(edge_index):
+        where = edges[edge_index], middles[edge_index], line_index
+        rank = np.fmin(_ranks(*where, supports), 1.0 + _ranks(*where, holding))
+        rank = np.fmin(rank, WEAK + _ranks(*where, cuts))
+        # Written from worst to best, so that the best of each edge is written last.
+        order = np.lexsort((line_index, rank))[::-1]
+        best[edge_index[order]] = rank[order]
+        holder[edge_index[order]] = np.where(np.isfinite(rank[order]), line_index[order], -1)
+    return np.where(np.isfinite(best), holder, -1), best < WEAK
 
 
 def _ranks(

@@ -233,6 +233,7 @@ class _Trapezoids:
         self._s = edges[:, :, 0] * dy - edges[:, :, 1] * dx
         self._t = edges[:, :, 0] * dx + edges[:, :, 1] * dy
         self._holders = panel.holders
+        self._firm = panel.firm
         self._lines = lines
         self._pieces = self._cut(self._stations(panel))
 
@@ -269,7 +270,7 @@ class _Trapezoids:
             chord = 0.5 * (b0 - a0 + b1 - a1)
             area = (last - first) * chord
             total += area
-            held = (self._holders[lower] >= 0) + (self._holders[upper] >= 0)
+            held = self._firm[lower] + self._firm[upper]
             if held == 2:
                 both += area
                 moment += area * chord

@@ -33,7 +33,7 @@ def two_way_parts(panel: Panel) -> list[tuple[Polygon, int, Vector2]] | None:
     polygon = panel.polygon
     if polygon.interiors or polygon.area < (1.0 - 1e-6) * polygon.convex_hull.area or not _is_compact(polygon):
         return None
-    held = sum(_length(edge) for edge, holder in zip(panel.edges.tolist(), panel.holders, strict=True) if holder >= 0)
+    held = sum(_length(edge) for edge, firm in zip(panel.edges.tolist(), panel.firm, strict=True) if firm)
     if held < LEAST_HELD_PERIMETER * polygon.length:
         return None
     sides = _sides(panel)

@@ -76,6 +76,17 @@ def test_slab_beyond_its_edge_beam_overhangs_and_loads_it_alone() -> None:
     assert layout.findings == ("4.8 m² overhang: they have one support only, which is given all their load",)
 
 
+def test_slab_a_little_past_the_ends_of_its_beams_still_rests_on_them() -> None:
+    """Two beams 8 m long under a slab of 8.6 m: each takes half of all of it."""
+    lines = [line("A", 0.3, 0, 8.3, 0), line("B", 0.3, 3, 8.3, 3)]
+    assert areas(lay_out(box(0, 0, 8.6, 3), lines)) == pytest.approx({"A": 12.9, "B": 12.9})
+
+
+def test_narrow_overhang_loads_the_joist_along_it_not_the_girders_across() -> None:
+    """0.3 m of slab beyond the last joist rest on that joist, although the girders' lines reach nearly as far."""
+    assert areas(lay_out(box(0, 0, 9.3, 6), frame(9, 6, (0, 3, 6, 9))))["J9"] == pytest.approx(9.0 + 1.8)
+
+
 def test_edge_beam_beside_the_slab_still_carries_its_edge() -> None:
     """A beam 0.2 m outside the edge holds it."""
     lines = [line("A", -0.2, 0, -0.2, 6, 0.1), line("B", 4, 0, 4, 6, 0.1)]
