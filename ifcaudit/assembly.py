@@ -54,7 +54,7 @@ def set_aside(beam: Beam) -> BeamResult:
     )
 
 
-def unreadable(beam: Beam) -> BeamResult:
+def unreadable(beam: Beam, reason: str = "") -> BeamResult:
     """Return the result of a beam whose geometry could not be read."""
     return BeamResult(
         global_id=beam.global_id,
@@ -62,7 +62,7 @@ def unreadable(beam: Beam) -> BeamResult:
         name=beam.name,
         storey=beam.storey,
         status=Status.NOT_CHECKED,
-        reason=beam.unreadable or "its axis has no length in plan: check its geometry in the model",
+        reason=reason or beam.unreadable or "its axis has no length in plan: check its geometry in the model",
         findings=beam.findings,
     )
 

@@ -73,7 +73,7 @@ def audit(
     rule_set = _rule_set(rules, live_load, superimposed_dead, live_load_reduction=live_load_reduction)
     progress("reading", None)
     building = read_building(Path(path))
-    candidates = [beam for beam in building.beams if not beam.set_aside and _has_axis(beam)]
+    candidates = _distinct([beam for beam in building.beams if not beam.set_aside and _has_axis(beam)])
     progress("floor layout", len(candidates))
     framed = frame_beams(candidates, building.supports)
     floors, findings = lay_out_floors(building, framed, rule_set)
@@ -112,6 +112,11 @@ def _rule_set(
 
 def _has_axis(beam: Beam) -> bool:
     return not beam.unreadable and beam.plan_length > SHORTEST_PLAN_LENGTH
+
+
+def _distinct(beams: Sequence[Beam]) -> list[Beam]:
+    """Keep the first beam of each GlobalId: a second one cannot be told from it in any output."""
+    return list({beam.global_id: beam for beam in reversed(beams)}.values())[::-1]
 
 
 def identify(framed: FramedBeam, rules: RuleSet) -> Member:
@@ -227,6 +232,10 @@ def _results(beams: Sequence[Beam], judged: Sequence[Judged]) -> tuple[BeamResul
             results.append(assembly.set_aside(beam))
         elif beam.entity_id in by_id:
             results.append(assembly.judge(by_id[beam.entity_id]))
+        elif _has_axis(beam):
+            results.append(
+                assembly.unreadable(beam, f"another beam has its GlobalId {beam.global_id}: give it its own")
+            )
         else:
             results.append(assembly.unreadable(beam))
     return tuple(results)

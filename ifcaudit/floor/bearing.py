@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from math import hypot
+from math import dist, hypot
 
 import numpy as np
 import shapely
@@ -68,7 +68,11 @@ def bearing_lines(
             if found is not None:
                 result[stack_index].append(found)
     bearing_walls = [
-        wall for wall in walls if wall.kind is VerticalKind.WALL and _thickness(wall) >= LEAST_WALL_THICKNESS
+        wall
+        for wall in walls
+        if wall.kind is VerticalKind.WALL
+        and dist(*wall.centreline) > LEAST_CONTACT
+        and _thickness(wall) >= LEAST_WALL_THICKNESS
     ]
     if bearing_walls:
         tree = STRtree([wall.footprint for wall in bearing_walls])

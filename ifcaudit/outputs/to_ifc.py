@@ -186,7 +186,7 @@ def _project_scales(text: StepText, opened: Any) -> dict[str, float]:
     projects = model.by_type("IfcProject") if model else ()
     assignment = projects[0].UnitsInContext if projects else None
     scales: dict[str, float] = {}
-    for unit in (assignment.Units or ()) if assignment is not None else ():
+    for unit in getattr(assignment, "Units", None) or ():
         if not (unit.is_a("IfcNamedUnit") or unit.is_a("IfcDerivedUnit")) or unit.UnitType in scales:
             continue
         try:

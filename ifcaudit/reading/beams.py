@@ -14,7 +14,7 @@ from ifcaudit.model.material import MaterialText
 from ifcaudit.model.section import ProfileShape
 from ifcaudit.reading.bodies import Bodies, Body, HalfSpace, Mesh, Prism, Unreadable, prism_corners
 from ifcaudit.reading.candidates import set_aside_reason
-from ifcaudit.reading.ifc_file import Model
+from ifcaudit.reading.ifc_file import MALFORMED, Model
 from ifcaudit.reading.placements import Placements, cross, dot, unit
 from ifcaudit.reading.profiles import Profiles
 from ifcaudit.reading.relations import Relations
@@ -115,9 +115,28 @@ class _Reader:
         """Read one candidate; whatever is wrong with it stays its own."""
         try:
             solid, problem = self._solid(element)
-        except (ValueError, TypeError, ArithmeticError, LookupError, shapely.errors.ShapelyError) as error:
+        except MALFORMED as error:
             solid, problem = None, f"its geometry cannot be read ({error}); export it again as a swept profile"
-        return self._record(element, solid, problem)
+        try:
+            return self._record(element, solid, problem)
+        except MALFORMED as error:
+            return self._malformed(element, error)
+
+    def _malformed(self, element: Any, error: BaseException) -> Beam:
+        """A candidate whose relations or texts are broken: nothing of it is trusted."""
+        zero = (0.0, 0.0, 0.0)
+        return Beam(
+            global_id=str(self._model.get(element, "GlobalId")),
+            entity_id=element.id(),
+            ifc_class=element.is_a(),
+            name=str(self._model.get(element, "Name") or "").strip(),
+            storey="",
+            start=zero,
+            end=zero,
+            height=0.0,
+            width=0.0,
+            unreadable=f"its type, material or storey is malformed ({error}); repair or export the model again",
+        )
 
     def _record(self, element: Any, solid: _Solid | None, problem: str) -> Beam:
         model, relations = self._model, self._relations

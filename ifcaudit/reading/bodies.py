@@ -13,7 +13,7 @@ from shapely import MultiPoint, Polygon
 from shapely.affinity import affine_transform
 
 from ifcaudit.model.building import PlanArea, Point3
-from ifcaudit.reading.ifc_file import Model
+from ifcaudit.reading.ifc_file import MALFORMED, Model
 from ifcaudit.reading.placements import IDENTITY, Placements, Transform, compose, dot, unit
 from ifcaudit.reading.profiles import Profiles
 
@@ -104,6 +104,12 @@ class Bodies:
 
     def of(self, product: Any) -> tuple[Body, ...]:
         """Bodies of a product in world metres; one ``Unreadable`` when it has none."""
+        try:
+            return self._of(product)
+        except MALFORMED as error:
+            return (Unreadable(f"its placement or body is malformed ({error})"),)
+
+    def _of(self, product: Any) -> tuple[Body, ...]:
         placement = self._placements.of(self._model.get(product, "ObjectPlacement"))
         if placement is None:
             return (Unreadable("it is placed along a grid or an alignment, which is not read"),)
@@ -130,7 +136,7 @@ class Bodies:
         if key not in self._items:
             try:
                 self._items[key] = self._read(item, depth)
-            except (ValueError, TypeError, IndexError, ZeroDivisionError, shapely.errors.ShapelyError) as error:
+            except MALFORMED as error:
                 self._items[key] = (Unreadable(f"its body cannot be read ({item.is_a()}: {error})"),)
         return self._items[key]
 

@@ -6,8 +6,9 @@ from collections import Counter
 from collections.abc import Callable, Sequence
 from pathlib import Path
 
+from ifcaudit.errors import ModelFileError
 from ifcaudit.model.building import Beam, Building, Slab
-from ifcaudit.reading.ifc_file import Model, open_model
+from ifcaudit.reading.ifc_file import MALFORMED, Model, open_model
 
 Progress = Callable[[str], None]
 
@@ -29,7 +30,15 @@ def read_building(path: Path, progress: Progress | None = None) -> Building:
     Raises:
         ModelFileError: The file cannot be opened or is no IFC model.
     """
-    # Imported here: the geometry libraries take half a second to load, and a wrong path needs none of them.
+    try:
+        return _read(path, progress or _silent)
+    except MALFORMED as error:
+        raise ModelFileError(
+            f"{path}: is malformed ({type(error).__name__}: {error}); repair it, or export the model again"
+        ) from error
+
+
+def _read(path: Path, report: Progress) -> Building:
     from ifcaudit.reading.beams import read_beams
     from ifcaudit.reading.bodies import Bodies
     from ifcaudit.reading.placements import Placements
@@ -38,7 +47,6 @@ def read_building(path: Path, progress: Progress | None = None) -> Building:
     from ifcaudit.reading.slabs import read_slabs
     from ifcaudit.reading.supports import read_supports
 
-    report = progress or _silent
     report("opening the model")
     model = open_model(path)
     placements, relations = Placements(model), Relations(model)

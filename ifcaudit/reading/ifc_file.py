@@ -4,15 +4,30 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass, field
+from math import inf
 from pathlib import Path
 from typing import Any
 
 import ifcopenshell
 import ifcopenshell.util.unit
+import shapely
 
 from ifcaudit.errors import ModelFileError
 
-SUPPORTED = ("IFC2X3", "IFC4", "IFC4X3")
+MALFORMED = (
+    ValueError,
+    TypeError,
+    ArithmeticError,
+    LookupError,
+    AttributeError,
+    RuntimeError,
+    shapely.errors.ShapelyError,
+)
+"""What references to nothing, to the wrong class, or numbers out of range make the libraries raise."""
+NO_LENGTH_UNIT = (
+    "the model states no length unit that can be read: metres are assumed; "
+    "if spans look wrong, export it with its units"
+)
 _SCHEMA = re.compile(rb"FILE_SCHEMA\s*\(\s*\(\s*'([^']*)'", re.IGNORECASE)
 _INSTANCE = re.compile(rb"#(\d+)\s*=")
 _TAIL = 1 << 16
@@ -58,7 +73,9 @@ class Model:
         return position
 
     def get(self, entity: Any, attribute: str) -> Any:
-        """Value of an attribute; ``None`` where it is empty or the class has none of the name."""
+        """Value of an attribute; ``None`` where it is empty, the class has none of the name, or nothing is given."""
+        if not isinstance(entity, ifcopenshell.entity_instance):
+            return None
         position = self.position(entity.is_a(), attribute)
         return None if position < 0 else entity.get_argument(position)
 
@@ -140,18 +157,25 @@ def _holds(file: Any, identifier: int) -> bool:
 
 
 def _length_unit(file: Any) -> tuple[float, str, tuple[str, ...]]:
-    unit = ifcopenshell.util.unit.get_project_unit(file, "LENGTHUNIT") if file.by_type("IfcProject") else None
-    if unit is None:
+    try:
+        unit = ifcopenshell.util.unit.get_project_unit(file, "LENGTHUNIT") if file.by_type("IfcProject") else None
+        scale = float(ifcopenshell.util.unit.calculate_unit_scale(file, "LENGTHUNIT")) if unit is not None else 1.0
+    except MALFORMED:
+        unit, scale = None, 1.0
+    if unit is None or not 0.0 < scale < inf:
         return (
             1.0,
             "",
-            ("the model states no length unit: metres are assumed; if spans look wrong, export it with its units",),
+            (NO_LENGTH_UNIT,),
         )
     name = str(ifcopenshell.util.unit.get_full_unit_name(unit)).lower().replace("_", " ")
-    return float(ifcopenshell.util.unit.calculate_unit_scale(file, "LENGTHUNIT")), name, ()
+    return scale, name, ()
 
 
 def _radian_per_unit(file: Any) -> float:
     if not file.by_type("IfcProject"):
         return 1.0
-    return float(ifcopenshell.util.unit.calculate_unit_scale(file, "PLANEANGLEUNIT"))
+    try:
+        return float(ifcopenshell.util.unit.calculate_unit_scale(file, "PLANEANGLEUNIT"))
+    except MALFORMED:
+        return 1.0

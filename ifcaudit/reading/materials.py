@@ -203,12 +203,16 @@ def unit_scale(unit: Any) -> float:
     Args:
         unit: ``IfcSIUnit``, ``IfcConversionBasedUnit`` or ``IfcDerivedUnit``; 1 for anything else.
     """
+    if unit is None:
+        return 1.0
     if unit.is_a("IfcSIUnit"):
         power = _PREFIX_POWER.get(unit.Name, 1)
         prefix = _SI_PREFIXES.get(unit.Prefix or "", 1.0) ** power
         return prefix * (1e-3 if unit.Name == "GRAM" else 1.0)
     if unit.is_a("IfcConversionBasedUnit"):
         measure = unit.ConversionFactor
+        if measure is None:
+            return 1.0
         return float(measure.ValueComponent[0]) * unit_scale(measure.UnitComponent)
     if unit.is_a("IfcDerivedUnit"):
         scale = 1.0

@@ -12,7 +12,7 @@ from shapely import Polygon
 from shapely.affinity import affine_transform
 
 from ifcaudit.model.section import Point2, ProfileShape, SectionKind
-from ifcaudit.reading.ifc_file import Model
+from ifcaudit.reading.ifc_file import MALFORMED, Model
 from ifcaudit.reading.outlines import recognise
 from ifcaudit.reading.placements import Placements
 
@@ -44,11 +44,13 @@ class Profiles:
 
     def polygon(self, profile: Any) -> Polygon | None:
         """Outline with holes in the profile plane [m]; ``None`` where the profile gives none. Fillets are left out."""
+        if profile is None:
+            return None
         key = profile.id()
         if key not in self._polygons:
             try:
                 polygon = self._outline(profile)
-            except (ValueError, TypeError, IndexError, ZeroDivisionError, shapely.errors.ShapelyError):
+            except MALFORMED:
                 polygon = None
             self._polygons[key] = polygon if polygon is not None and polygon.area > 0.0 else None
         return self._polygons[key]

@@ -57,7 +57,7 @@ def property_kind(name: str) -> PropertyKind:
         >>> property_kind("Electrode strength").value
         'other'
     """
-    folded = re.sub(r"[^a-z0-9]", "", name.lower().translate(_FOLD).replace("ß", "ss"))
+    folded = re.sub(r"[^a-z0-9]", "", str(name).lower().translate(_FOLD).replace("ß", "ss"))
     if _GRADE.match(folded):
         return PropertyKind.GRADE
     if _SECTION.match(folded):

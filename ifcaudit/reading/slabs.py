@@ -101,7 +101,28 @@ def read_slabs(model: Model, placements: Placements, bodies: Bodies, relations: 
     context = _Context(model=model, placements=placements, bodies=bodies, relations=relations)
     elements = {element.id(): element for named in ("IfcSlab", "IfcRoof") for element in model.file.by_type(named)}
     wanted = [elements[key] for key in sorted(elements) if not _represented_elsewhere(context, elements[key])]
-    return tuple(slab for element in wanted for slab in _read(context, element))
+    return tuple(slab for element in wanted for slab in _read_safely(context, element))
+
+
+def _read_safely(context: _Context, element: Any) -> tuple[Slab, ...]:
+    """Read one element; whatever is malformed in it stays its own."""
+    try:
+        return _read(context, element)
+    except GEOMETRY_ERRORS as error:
+        return (
+            Slab(
+                global_id=str(context.model.get(element, "GlobalId")),
+                entity_id=element.id(),
+                ifc_class=element.is_a(),
+                name=str(context.model.get(element, "Name") or "").strip(),
+                storey=context.relations.storey_of(element.id()),
+                plan=Polygon(),
+                gross_area=0.0,
+                top=0.0,
+                bottom=0.0,
+                unreadable=f"it is malformed ({error}); repair or export the model again",
+            ),
+        )
 
 
 def _represented_elsewhere(context: _Context, element: Any) -> bool:

@@ -41,7 +41,10 @@ def read_supports(
         for element in model.file.by_type(named):
             if _part_of_support(relations, element) or _part_of_curtain_wall(relations, element):
                 continue
-            support = _support(model, element, kind, _blocks(bodies, relations, element))
+            try:
+                support = _support(model, element, kind, _blocks(bodies, relations, element))
+            except GEOMETRY_ERRORS:
+                support = None
             if support is not None:
                 supports.append((element.id(), support))
             else:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from math import cos, radians, sin
 from pathlib import Path
 from typing import Any
@@ -81,3 +82,40 @@ def test_wall_standing_on_the_floor_is_an_assumption_of_its_beams(tmp_path: Path
         == "walls on the floor: 1 wall stands on S: taken to weigh no more than its area loads allow for"
     )
     assert assumption.remedy == "Raise --superimposed-dead by their weight per floor area if they weigh more."
+
+
+SAMPLE = Path(__file__).parents[2] / "sample_models" / "harbour-yard-office.ifc"
+
+
+def test_malformed_instances_cost_their_own_beam_and_no_other(tmp_path: Path) -> None:
+    """A joist whose body refers to nothing is not checked; every beam that does not depend on it keeps its verdict."""
+    lines = SAMPLE.read_text(encoding="utf-8").splitlines()
+    numbers = {line.split("=")[0]: index for index, line in enumerate(lines) if line.startswith("#")}
+    joist = next(line for line in lines if "IFCBEAM(" in line and "'L1 joist BC 2.5'" in line)
+    shape = re.findall(r"#\d+", joist.split("IFCBEAM(")[1])[-1]
+    lines[numbers[shape]] = re.sub(r"\(#[\d,#]+\)", "($)", lines[numbers[shape]])
+    path = tmp_path / "broken.ifc"
+    path.write_text("\n".join(lines), encoding="utf-8")
+    sound = {beam.name: beam for beam in ifcaudit.audit(SAMPLE).beams}
+    broken = {beam.name: beam for beam in ifcaudit.audit(path).beams}
+    assert broken["L1 joist BC 2.5"].status is Status.NOT_CHECKED
+    assert broken["L1 joist BC 2.5"].reason
+    assert set(broken) == set(sound)
+    for name, beam in sound.items():
+        if name.startswith("Roof"):
+            assert (broken[name].status, broken[name].utilization) == (beam.status, beam.utilization)
+
+
+def test_second_beam_with_the_same_global_id_is_not_checked(tmp_path: Path) -> None:
+    """Two beams that no output could tell apart: the first is judged, the other says why it is not."""
+    text = SAMPLE.read_text(encoding="utf-8")
+    first_id, second_id = (
+        re.search(rf"IFCBEAM\('([^']+)',[^,]*,'{name}'", text).group(1)  # type: ignore[union-attr]
+        for name in ("Roof joist CD 2.5", "Roof joist CD 5.0")
+    )
+    path = tmp_path / "twice.ifc"
+    path.write_text(text.replace(f"IFCBEAM('{second_id}'", f"IFCBEAM('{first_id}'"), encoding="utf-8")
+    found = {beam.name: beam for beam in ifcaudit.audit(path).beams}
+    assert found["Roof joist CD 2.5"].status is Status.ADEQUATE
+    assert found["Roof joist CD 5.0"].status is Status.NOT_CHECKED
+    assert found["Roof joist CD 5.0"].reason == f"another beam has its GlobalId {first_id}: give it its own"

@@ -44,12 +44,13 @@ def test_beam_is_read_in_metres_whatever_schema_and_unit(
 def test_missing_length_unit_is_reported_and_metres_are_assumed(tmp_path: Path) -> None:
     """A model without a length unit is read in metres, and says so."""
     from ifcaudit.reading.building import read_building
+    from ifcaudit.reading.ifc_file import NO_LENGTH_UNIT
 
     model = SteelModel(units=False)
     model.element(model.extrusion(model.i_profile(scale=0.001), 6.0))
     assert only(model.read(tmp_path)).length == pytest.approx(6.0)
     findings = read_building(tmp_path / "model.ifc").findings
-    assert any(finding.startswith("the model states no length unit: metres are assumed") for finding in findings)
+    assert NO_LENGTH_UNIT in findings
 
 
 def test_nested_and_turned_placements_end_in_world_coordinates(tmp_path: Path) -> None:
