@@ -83,7 +83,7 @@ def lay_out_slab(slab_id: str, plan: PlanArea, supports: Sequence[SupportLine], 
     lines = [_moved(line, -centre.x, -centre.y) for line in supports]
     try:
         panels = cut_into_panels(local, lines)
-    except GEOSException as error:
+    except (GEOSException, ValueError, ArithmeticError) as error:  # coordinates out of all proportion
         return SlabLayout(
             slab_id=slab_id,
             area=plan.area,

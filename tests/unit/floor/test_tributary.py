@@ -137,6 +137,14 @@ def test_slab_on_nothing_is_unassigned_with_a_finding() -> None:
     assert layout.findings == ("20.0 m² rest on no beam or wall",)
 
 
+def test_outline_out_of_all_proportion_is_unassigned_with_a_finding() -> None:
+    """Lines whose two ends fall together beside coordinates of 1e30 m cut nothing; the audit goes on."""
+    layout = lay_out_slab("S", box(0, 0, 1e30, 6), [line("A", 0, 0, 0, 6), line("B", 4, 0, 4, 6)], ONE_WAY)
+    assert layout.strips == ()
+    assert sum(part.area for part in layout.unassigned) == pytest.approx(6e30)
+    assert layout.findings
+
+
 def test_two_way_square_gives_each_side_a_quarter() -> None:
     """The 45-degree pattern on a square: four triangles of s²/4."""
     lines = [*frame(6, 6, (0, 6))]
