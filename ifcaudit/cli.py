@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import gc
 import sys
 from collections.abc import Sequence
 from importlib.metadata import version
@@ -30,6 +31,9 @@ licensed professional, or the local building code.
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run a command and return its exit status."""
     options = _parser().parse_args(arguments)
+    # One audit holds nearly all it makes until it ends: collecting on the way costs a seventh of its time for nothing.
+    collecting = gc.isenabled()
+    gc.disable()
     try:
         return _audit(options)
     except AuditError as error:
@@ -38,6 +42,9 @@ def main(arguments: Sequence[str] | None = None) -> int:
     except KeyboardInterrupt:
         print("ifcaudit: interrupted; nothing was written", file=sys.stderr)  # noqa: T201 — as above
         return EXIT_USAGE
+    finally:
+        if collecting:
+            gc.enable()
 
 
 def _parser() -> argparse.ArgumentParser:
