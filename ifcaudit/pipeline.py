@@ -24,7 +24,7 @@ from ifcaudit.loadpath.slab_action import slab_behaviour
 from ifcaudit.loadpath.takedown import BeamLoading, LoadedSlab, take_down
 from ifcaudit.model.audit import Audit, BeamResult
 from ifcaudit.model.building import Beam, BendingAxis, Building, Slab
-from ifcaudit.model.framing import FramedBeam
+from ifcaudit.model.framing import Carrier, FramedBeam
 from ifcaudit.model.loads import LoadCase
 from ifcaudit.model.material import MaterialText
 from ifcaudit.model.section import Section, SectionKind
@@ -181,7 +181,8 @@ def lay_out_floors(
             [item.line for item in rests_on],
             slab_behaviour(stack, rules.materials),
         )
-        load = area_load(stack, rules, density_of, walls_on_it)
+        bearing_walls = {strip.support_id for strip in layout.strips if strip.carrier is Carrier.WALL}
+        load = area_load(stack, rules, density_of, walls_on_it, len(bearing_walls))
         floors.append(LoadedSlab(stack=stack, load=load, lines=rests_on, layout=layout))
         remarks.extend(f"slab {stack.slab.name or stack.slab.global_id}: {text}" for text in layout.findings)
     return floors, tuple(remarks)

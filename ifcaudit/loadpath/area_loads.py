@@ -58,7 +58,9 @@ def mass_per_area(slab: Slab, density_of: DensityOf) -> float:
     return sum(layer.thickness * density_of(layer.material).value for layer in slab.layers)
 
 
-def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf, standing_walls: int = 0) -> AreaLoad:
+def area_load(
+    stack: Stack, rules: RuleSet, density_of: DensityOf, standing_walls: int = 0, bearing_walls: int = 0
+) -> AreaLoad:
     """Add up the loads on one stack of slabs.
 
     Weight acts per surface area, live load and the superimposed allowance per plan area. A roof takes roof live load
@@ -69,6 +71,7 @@ def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf, standing_wall
         rules: Loads where the model says nothing.
         density_of: Density of a layer's material, with its source.
         standing_walls: Number of walls that stand on the floor; their weight is not taken down, and that is said.
+        bearing_walls: Number of walls below that take part of it; that they bear is assumed, and said.
     """
     slab, loads = stack.slab, rules.loads
     pressures = np.zeros(CASE_COUNT)
@@ -93,6 +96,8 @@ def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf, standing_wall
         inputs.extend(_layer_inputs(owner, density_of))
     if standing_walls:
         inputs.append(("walls on the floor", _walls_allowed_for(slab, standing_walls)))
+    if bearing_walls:
+        inputs.append(("walls under the floor", _walls_taken_as_bearing(slab, bearing_walls)))
     return AreaLoad(
         slab=slab,
         pressures=pressures,
@@ -108,6 +113,16 @@ def _walls_allowed_for(slab: Slab, walls: int) -> Sourced[object]:
         source=Source.ASSUMED,
         where=f"{walls} {noun} on {slab.name or slab.global_id}: taken to weigh no more than its area loads allow for",
         remedy="Raise --superimposed-dead by their weight per floor area if they weigh more.",
+    )
+
+
+def _walls_taken_as_bearing(slab: Slab, walls: int) -> Sourced[object]:
+    which = "1 wall that reaches it is" if walls == 1 else f"{walls} walls that reach it are"
+    return Sourced(
+        value=walls,
+        source=Source.ASSUMED,
+        where=f"part of {slab.name or slab.global_id} rests on walls: {which} taken as bearing",
+        remedy="Leave walls that do not bear out of the model, so that the beams beside them take their share.",
     )
 
 
