@@ -14,7 +14,8 @@ from ifcaudit.model.material import MaterialText
 from ifcaudit.model.section import ProfileShape
 from ifcaudit.reading.bodies import Bodies, Body, HalfSpace, Mesh, Prism, Unreadable, prism_corners
 from ifcaudit.reading.candidates import set_aside_reason
-from ifcaudit.reading.ifc_file import MALFORMED, Model
+from ifcaudit.reading.ifc_file import Model
+from ifcaudit.reading.malformed import MALFORMED
 from ifcaudit.reading.placements import Placements, cross, dot, unit
 from ifcaudit.reading.profiles import Profiles
 from ifcaudit.reading.relations import Relations

@@ -13,7 +13,8 @@ from shapely import MultiPoint, Polygon
 from shapely.affinity import affine_transform
 
 from ifcaudit.model.building import PlanArea, Point3
-from ifcaudit.reading.ifc_file import MALFORMED, Model
+from ifcaudit.reading.ifc_file import Model
+from ifcaudit.reading.malformed import MALFORMED
 from ifcaudit.reading.placements import IDENTITY, Placements, Transform, compose, dot, unit
 from ifcaudit.reading.profiles import Profiles
 

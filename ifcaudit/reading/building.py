@@ -8,7 +8,8 @@ from pathlib import Path
 
 from ifcaudit.errors import ModelFileError
 from ifcaudit.model.building import Beam, Building, Slab
-from ifcaudit.reading.ifc_file import MALFORMED, Model, open_model
+from ifcaudit.reading.ifc_file import Model, open_model
+from ifcaudit.reading.malformed import MALFORMED
 
 Progress = Callable[[str], None]
 

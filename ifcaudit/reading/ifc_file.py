@@ -10,20 +10,10 @@ from typing import Any
 
 import ifcopenshell
 import ifcopenshell.util.unit
-import shapely
 
 from ifcaudit.errors import ModelFileError
+from ifcaudit.reading.malformed import MALFORMED
 
-MALFORMED = (
-    ValueError,
-    TypeError,
-    ArithmeticError,
-    LookupError,
-    AttributeError,
-    RuntimeError,
-    shapely.errors.ShapelyError,
-)
-"""What references to nothing, to the wrong class, or numbers out of range make the libraries raise."""
 NO_LENGTH_UNIT = (
     "the model states no length unit that can be read: metres are assumed; "
     "if spans look wrong, export it with its units"

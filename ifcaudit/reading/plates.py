@@ -21,16 +21,6 @@ FloatArray: TypeAlias = NDArray[np.float64]
 IntArray: TypeAlias = NDArray[np.int64]
 Gradient: TypeAlias = tuple[float, float]
 
-GEOMETRY_ERRORS = (
-    ValueError,
-    TypeError,
-    ArithmeticError,
-    LookupError,
-    AttributeError,
-    RuntimeError,
-    shapely.errors.ShapelyError,
-)
-"""What broken geometry (empty outlines, missing corners, self-crossing rings) makes the libraries raise."""
 STEEPEST = 0.17
 """Least vertical component of a unit normal that still makes a face a top or an underside (about 80° of slope)."""
 SAME_SLOPE = 0.05

@@ -12,7 +12,8 @@ from shapely import Polygon
 from shapely.affinity import affine_transform
 
 from ifcaudit.model.section import Point2, ProfileShape, SectionKind
-from ifcaudit.reading.ifc_file import MALFORMED, Model
+from ifcaudit.reading.ifc_file import Model
+from ifcaudit.reading.malformed import MALFORMED
 from ifcaudit.reading.outlines import recognise
 from ifcaudit.reading.placements import Placements
 

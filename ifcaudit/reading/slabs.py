@@ -14,10 +14,10 @@ from ifcaudit.model.building import Layer, PlanArea, Slab
 from ifcaudit.model.material import MaterialText
 from ifcaudit.reading.bodies import Bodies, HalfSpace, Mesh, Prism, Unreadable, plan_footprint, z_range
 from ifcaudit.reading.ifc_file import Model
+from ifcaudit.reading.malformed import MALFORMED
 from ifcaudit.reading.materials import MaterialLayer
 from ifcaudit.reading.placements import Placements
 from ifcaudit.reading.plates import (
-    GEOMETRY_ERRORS,
     UNCUT,
     Extrusion,
     Plate,
@@ -108,7 +108,7 @@ def _read_safely(context: _Context, element: Any) -> tuple[Slab, ...]:
     """Read one element; whatever is malformed in it stays its own."""
     try:
         return _read(context, element)
-    except GEOMETRY_ERRORS as error:
+    except MALFORMED as error:
         return (
             Slab(
                 global_id=str(context.model.get(element, "GlobalId")),
@@ -247,7 +247,7 @@ def _own_pieces(context: _Context, element: Any) -> tuple[list[_Piece], list[str
             continue
         try:
             plates = _plates(body)
-        except GEOMETRY_ERRORS as error:
+        except MALFORMED as error:
             problems.append(f"its body is no usable solid ({error})")
             continue
         if not plates:
@@ -310,7 +310,7 @@ def _openings(context: _Context, element: Any) -> tuple[list[_Opening], list[str
             try:
                 low, high = z_range(body)
                 area = outline_of(body)
-            except GEOMETRY_ERRORS:
+            except MALFORMED:
                 problems.append(f"opening {name} has no readable body; its area is still loaded")
                 continue
             found.append(_Opening(name=name, area=area, bottom=low, top=high, recess=recess))

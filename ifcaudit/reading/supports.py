@@ -12,7 +12,8 @@ from ifcaudit.model.building import PlanArea, VerticalKind, VerticalSupport
 from ifcaudit.model.section import Point2
 from ifcaudit.reading.bodies import Bodies, Mesh, Prism, Unreadable, plan_footprint, z_range
 from ifcaudit.reading.ifc_file import Model
-from ifcaudit.reading.plates import GEOMETRY_ERRORS, centre_of, clean_area, plan_of_mesh
+from ifcaudit.reading.malformed import MALFORMED
+from ifcaudit.reading.plates import centre_of, clean_area, plan_of_mesh
 from ifcaudit.reading.relations import Relations
 
 _CLASSES = (("IfcColumn", VerticalKind.COLUMN), ("IfcWall", VerticalKind.WALL))
@@ -43,7 +44,7 @@ def read_supports(
                 continue
             try:
                 support = _support(model, element, kind, _blocks(bodies, relations, element))
-            except GEOMETRY_ERRORS:
+            except MALFORMED:
                 support = None
             if support is not None:
                 supports.append((element.id(), support))
@@ -96,7 +97,7 @@ def _support(model: Model, element: Any, kind: VerticalKind, blocks: list[Prism 
         try:
             outline = _outline(block, kind)
             low, high = z_range(block)
-        except GEOMETRY_ERRORS:
+        except MALFORMED:
             continue  # a support without any usable body is reported
         if not outline.is_empty and high > low:
             outlines.append(outline)
