@@ -23,8 +23,9 @@ CAUTIONS = (
         "or the local building code."
     ),
     (
-        "Not covered: connections, web openings, notches and local web strength, torsion, axial force, lateral loads, "
-        "composite action, fire, fatigue, seismic detailing, vibration, ponding, erection."
+        "Not covered: loads of walls, stairs, facades and equipment; connections, web openings, notches and local web "
+        "strength, torsion, axial force, lateral loads, composite action, fire, fatigue, seismic detailing, vibration, "
+        "ponding, erection."
     ),
 )
 DEFLECTIONS = (CheckName.LIVE_DEFLECTION, CheckName.TOTAL_DEFLECTION)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
+from dataclasses import replace
 from functools import cache
 from importlib.metadata import version
 from os import PathLike
@@ -16,15 +17,16 @@ from ifcaudit.floor.bearing import bearing_lines, standing_walls
 from ifcaudit.floor.framing import frame_beams
 from ifcaudit.floor.stacking import stack_slabs
 from ifcaudit.floor.tributary import lay_out_slab
-from ifcaudit.loadpath.area_loads import area_load, mass_per_area
+from ifcaudit.loadpath.area_loads import area_load, layout_assumptions, mass_per_area
 from ifcaudit.loadpath.beam_loads import on_slope
+from ifcaudit.loadpath.doubts import doubtful_beams
 from ifcaudit.loadpath.members import Member
 from ifcaudit.loadpath.reduction import reduction_factor
 from ifcaudit.loadpath.slab_action import slab_behaviour
 from ifcaudit.loadpath.takedown import BeamLoading, LoadedSlab, take_down
 from ifcaudit.model.audit import Audit, BeamResult
-from ifcaudit.model.building import Beam, BendingAxis, Building, Slab
-from ifcaudit.model.framing import Carrier, FramedBeam
+from ifcaudit.model.building import Beam, BendingAxis, Building
+from ifcaudit.model.framing import FramedBeam
 from ifcaudit.model.loads import LoadCase
 from ifcaudit.model.material import MaterialText
 from ifcaudit.model.section import Section, SectionKind
@@ -79,7 +81,7 @@ def audit(
     floors, findings = lay_out_floors(building, framed, rule_set)
     progress("load path", len(candidates))
     members = [identify(item, rule_set) for item in framed]
-    takedown = take_down(members, floors, _unread_storeys(building.slabs))
+    takedown = take_down(members, floors, doubtful_beams(building.slabs, framed))
     progress("checks", len(candidates))
     judged = judge_all(takedown.beams, rule_set, progress)
     results = _results(building.beams, judged)
@@ -181,8 +183,9 @@ def lay_out_floors(
             [item.line for item in rests_on],
             slab_behaviour(stack, rules.materials),
         )
-        bearing_walls = {strip.support_id for strip in layout.strips if strip.carrier is Carrier.WALL}
-        load = area_load(stack, rules, density_of, walls_on_it, len(bearing_walls))
+        load = area_load(stack, rules, density_of)
+        taken = (*load.inputs, *layout_assumptions(stack.slab, layout, walls_on_it))
+        load = replace(load, inputs=taken)
         floors.append(LoadedSlab(stack=stack, load=load, lines=rests_on, layout=layout))
         remarks.extend(f"slab {stack.slab.name or stack.slab.global_id}: {text}" for text in layout.findings)
     return floors, tuple(remarks)
@@ -240,12 +243,3 @@ def _results(beams: Sequence[Beam], judged: Sequence[Judged]) -> tuple[BeamResul
         else:
             results.append(assembly.unreadable(beam))
     return tuple(results)
-
-
-def _unread_storeys(slabs: Sequence[Slab]) -> dict[str, str]:
-    """Storeys with a slab whose outline could not be read: their beams may carry more than was found."""
-    return {
-        slab.storey: f"slab {slab.name or slab.global_id} could not be read ({slab.unreadable})"
-        for slab in slabs
-        if slab.unreadable and not slab.on_grade
-    }

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from math import dist, hypot
+from math import dist
 
 import numpy as np
 import shapely
@@ -13,6 +13,7 @@ from shapely import LineString, STRtree
 from shapely.geometry.base import BaseGeometry
 
 from ifcaudit.floor.stacking import Stack
+from ifcaudit.floor.walls import may_bear, wall_thickness
 from ifcaudit.model.building import VerticalKind, VerticalSupport
 from ifcaudit.model.framing import Carrier, FramedBeam, SupportLine
 
@@ -22,8 +23,6 @@ SURE_GAP = 0.03
 """Gap between a top flange and the slab's underside taken without remark [m]."""
 LARGEST_GAP = 0.10
 """Gap beyond which a beam does not carry the slab above it [m]."""
-LEAST_WALL_THICKNESS = 0.10
-"""Thinner walls are partitions and carry no slab [m]."""
 LEAST_CONTACT = 0.20
 """Length of common plan line below which a crossing is no support [m]."""
 
@@ -70,9 +69,7 @@ def bearing_lines(
     bearing_walls = [
         wall
         for wall in walls
-        if wall.kind is VerticalKind.WALL
-        and dist(*wall.centreline) > LEAST_CONTACT
-        and _thickness(wall) >= LEAST_WALL_THICKNESS
+        if wall.kind is VerticalKind.WALL and dist(*wall.centreline) > LEAST_CONTACT and may_bear(wall)
     ]
     if bearing_walls:
         tree = STRtree([wall.footprint for wall in bearing_walls])
@@ -179,11 +176,13 @@ def _beam_bearing(outline: _Outline, item: FramedBeam, line: SupportLine) -> Bea
     if gap > SURE_GAP:
         name = _name(outline.stack)
         finding = f"its top lies {gap * 1000:.0f} mm below the underside of slab {name}; taken as carrying it"
-    over = axis.intersection(outline.grown(line.half_width + SURE_GAP)) if on_flange else None
+    # A slab that stays clear of the flange loads the beam through packs or bearers, but does not hold the flange.
+    holds = on_flange and gap <= SURE_GAP
+    over = axis.intersection(outline.grown(line.half_width + SURE_GAP)) if holds else None
     return BearingLine(
         line=line,
         origin=min(0.0, item.first_station),
-        on_flange=on_flange,
+        on_flange=holds,
         covered=_stretches(item, over) if over is not None else (),
         finding=finding,
     )
@@ -244,12 +243,6 @@ def _name(stack: Stack) -> str:
     return stack.slab.name or stack.slab.global_id
 
 
-def _thickness(wall: VerticalSupport) -> float:
-    (x0, y0), (x1, y1) = wall.centreline
-    length = hypot(x1 - x0, y1 - y0)
-    return float(wall.footprint.area) / length if length > 0.0 else 0.0
-
-
 def _wall_carries(stack: Stack, wall: VerticalSupport) -> bool:
     """A bearing wall stands below the slab and reaches it."""
     x, y = wall.footprint.representative_point().coords[0]
@@ -266,6 +259,6 @@ def _wall_line(wall: VerticalSupport) -> BearingLine:
     start, end = wall.centreline
     return BearingLine(
         line=SupportLine(
-            global_id=wall.global_id, carrier=Carrier.WALL, start=start, end=end, half_width=_thickness(wall) / 2
+            global_id=wall.global_id, carrier=Carrier.WALL, start=start, end=end, half_width=wall_thickness(wall) / 2
         )
     )

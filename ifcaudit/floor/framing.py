@@ -15,6 +15,7 @@ import numpy as np
 import shapely
 from shapely import LineString, Point, Polygon, STRtree
 
+from ifcaudit.floor.walls import may_bear
 from ifcaudit.model.building import Beam, PlanArea, VerticalKind, VerticalSupport
 from ifcaudit.model.framing import Carrier, EndSupport, FramedBeam
 from ifcaudit.model.loads import FloatArray
@@ -224,7 +225,9 @@ _COLUMN, _WALL, _BEAM, _ABUTTING = range(4)
 
 
 def _vertical_contact(axis: _Axis, support: VerticalSupport) -> _Contact | None:
-    """Column or wall as a support: it starts below the underside and reaches it."""
+    """Column or wall as a support: it starts below the underside and reaches it, and is no thin partition."""
+    if support.kind is VerticalKind.WALL and not may_bear(support):
+        return None
     crossing = _crossing(axis, support)
     if crossing is None:
         return None

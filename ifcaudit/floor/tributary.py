@@ -23,8 +23,6 @@ SHORTEST = 1e-7
 """Stations nearer than this are one; a hundred times what noding and survey coordinates leave uncertain [m]."""
 SLIVER = 1e-7
 """Parts smaller than this are rounding [m²]."""
-SAME_LENGTH = 1e-6
-"""Relative difference below which two spans are equally long."""
 LEAST_HELD_SHARE = 0.5
 """Share of a panel that must span between two supports before a direction counts as a span."""
 WIDE_OVERHANG = 0.6

@@ -11,6 +11,7 @@ from shapely.geometry.base import BaseGeometry
 
 from ifcaudit.floor.stacking import Stack
 from ifcaudit.model.building import Slab
+from ifcaudit.model.framing import Carrier, SlabLayout
 from ifcaudit.model.loads import CASE_COUNT, FloatArray, LoadCase
 from ifcaudit.model.material import MaterialText
 from ifcaudit.provenance import Source, Sourced
@@ -58,9 +59,7 @@ def mass_per_area(slab: Slab, density_of: DensityOf) -> float:
     return sum(layer.thickness * density_of(layer.material).value for layer in slab.layers)
 
 
-def area_load(
-    stack: Stack, rules: RuleSet, density_of: DensityOf, standing_walls: int = 0, bearing_walls: int = 0
-) -> AreaLoad:
+def area_load(stack: Stack, rules: RuleSet, density_of: DensityOf) -> AreaLoad:
     """Add up the loads on one stack of slabs.
 
     Weight acts per surface area, live load and the superimposed allowance per plan area. A roof takes roof live load
@@ -70,8 +69,6 @@ def area_load(
         stack: The structural slab and what lies on it.
         rules: Loads where the model says nothing.
         density_of: Density of a layer's material, with its source.
-        standing_walls: Number of walls that stand on the floor; their weight is not taken down, and that is said.
-        bearing_walls: Number of walls below that take part of it; that they bear is assumed, and said.
     """
     slab, loads = stack.slab, rules.loads
     pressures = np.zeros(CASE_COUNT)
@@ -94,10 +91,6 @@ def area_load(
         inputs.append((name, _from_rules(value)))
     for owner in (slab, *(other for other, _ in stack.resting)):
         inputs.extend(_layer_inputs(owner, density_of))
-    if standing_walls:
-        inputs.append(("walls on the floor", _walls_allowed_for(slab, standing_walls)))
-    if bearing_walls:
-        inputs.append(("walls under the floor", _walls_taken_as_bearing(slab, bearing_walls)))
     return AreaLoad(
         slab=slab,
         pressures=pressures,
@@ -106,23 +99,45 @@ def area_load(
     )
 
 
-def _walls_allowed_for(slab: Slab, walls: int) -> Sourced[object]:
-    noun = "wall stands" if walls == 1 else "walls stand"
-    return Sourced(
-        value=walls,
-        source=Source.ASSUMED,
-        where=f"{walls} {noun} on {slab.name or slab.global_id}: taken to weigh no more than its area loads allow for",
-        remedy="Raise --superimposed-dead by their weight per floor area if they weigh more.",
+def layout_assumptions(slab: Slab, layout: SlabLayout, standing_walls: int) -> tuple[tuple[str, Sourced[object]], ...]:
+    """State what is taken for granted about how a slab carries its load, and what stands on it.
+
+    Args:
+        slab: The structural slab.
+        layout: How it was shared out.
+        standing_walls: Number of walls that stand on the floor; their weight is not taken down.
+
+    Returns:
+        Inputs of every beam that it loads, all of them assumed, each with what settles it.
+    """
+    name = slab.name or slab.global_id
+    bearing = len({strip.support_id for strip in layout.strips if strip.carrier is Carrier.WALL})
+    stand = "wall stands" if standing_walls == 1 else "walls stand"
+    reach = "1 wall that reaches it is" if bearing == 1 else f"{bearing} walls that reach it are"
+    statements = (
+        (
+            standing_walls > 0,
+            "walls on the floor",
+            f"{standing_walls} {stand} on {name}: taken to weigh no more than its area loads allow for",
+            "Raise --superimposed-dead by their weight per floor area if they weigh more.",
+        ),
+        (
+            bearing > 0,
+            "walls under the floor",
+            f"part of {name} rests on walls: {reach} taken as bearing",
+            "Leave walls that do not bear out of the model, so that the beams beside them take their share.",
+        ),
+        (
+            any(strip.two_way for strip in layout.strips),
+            "slab action",
+            f"{name} is cast concrete: panels held on all sides, up to 2 to 1, are taken to span both ways",
+            "Name a layer deck, planks or precast where it spans one way.",
+        ),
     )
-
-
-def _walls_taken_as_bearing(slab: Slab, walls: int) -> Sourced[object]:
-    which = "1 wall that reaches it is" if walls == 1 else f"{walls} walls that reach it are"
-    return Sourced(
-        value=walls,
-        source=Source.ASSUMED,
-        where=f"part of {slab.name or slab.global_id} rests on walls: {which} taken as bearing",
-        remedy="Leave walls that do not bear out of the model, so that the beams beside them take their share.",
+    return tuple(
+        (title, Sourced(value=where, source=Source.ASSUMED, where=where, remedy=remedy))
+        for applies, title, where, remedy in statements
+        if applies
     )
 
 

@@ -184,22 +184,20 @@ def _overhang(beam: Beam, label: str, support: EndSupport) -> str:
     )
 
 
-def take_down(members: Sequence[Member], floors: Sequence[LoadedSlab], unread: Mapping[str, str]) -> Takedown:
+def take_down(members: Sequence[Member], floors: Sequence[LoadedSlab], doubts: Mapping[str, Sequence[str]]) -> Takedown:
     """Carry every load to columns and walls.
 
     Args:
         members: Load-carrying candidates.
         floors: Structural slabs, laid out.
-        unread: Storey name -> text naming a slab of that storey whose outline could not be read.
+        doubts: GlobalId of a beam -> why its loads may be incomplete.
     """
     paths = {member.beam.global_id: _Path(member) for member in members}
     ledger = _Ledger()
     for floor in floors:
         _load_from_slab(floor, paths, ledger)
     for path in paths.values():
-        reason = unread.get(path.member.beam.storey)
-        if reason:
-            path.uncertain.append(reason)
+        path.uncertain.extend(doubts.get(path.member.beam.global_id, ()))
         ledger.apply_self_weight(path)
     for level in _levels(paths, ledger):
         _solve_level(level, paths, ledger)

@@ -16,7 +16,7 @@ from ifcaudit.reading.bodies import Bodies, Body, HalfSpace, Mesh, Prism, Unread
 from ifcaudit.reading.candidates import set_aside_reason
 from ifcaudit.reading.ifc_file import Model
 from ifcaudit.reading.malformed import MALFORMED
-from ifcaudit.reading.placements import Placements, cross, dot, unit
+from ifcaudit.reading.placements import cross, dot, unit
 from ifcaudit.reading.profiles import Profiles
 from ifcaudit.reading.relations import Relations
 from ifcaudit.reading.vocabulary import names_rafter
@@ -51,14 +51,11 @@ class _Solid:
     findings: tuple[str, ...] = ()
 
 
-def read_beams(
-    model: Model, placements: Placements, bodies: Bodies, profiles: Profiles, relations: Relations
-) -> tuple[Beam, ...]:
+def read_beams(model: Model, bodies: Bodies, profiles: Profiles, relations: Relations) -> tuple[Beam, ...]:
     """Read every candidate beam, by rising instance number.
 
     Args:
         model: The open model.
-        placements: Not used beyond what the bodies hold; kept so that all readers are called alike.
         bodies: Bodies of products.
         profiles: Profile definitions.
         relations: Storeys, types and materials.

@@ -54,7 +54,7 @@ def _read(path: Path, report: Progress) -> Building:
     profiles = Profiles(model, placements)
     bodies = Bodies(model, placements, profiles)
     report("reading beams")
-    beams = read_beams(model, placements, bodies, profiles, relations)
+    beams = read_beams(model, bodies, profiles, relations)
     report("reading slabs")
     slabs = read_slabs(model, placements, bodies, relations)
     report("reading columns and walls")
@@ -80,6 +80,27 @@ def _remarks(model: Model, beams: Sequence[Beam], slabs: Sequence[Slab], *, supp
         )
     if not supported:
         remarks.append("the model has no column or wall; read the file that holds them, or state the supports")
+    remarks.extend(_left_out(model))
     unreadable = Counter(slab.unreadable for slab in slabs if slab.unreadable)
     remarks.extend(f"{count} of {len(slabs)} slabs cannot be read: {reason}" for reason, count in unreadable.items())
     return tuple(remarks)
+
+
+_WEIGHING = (
+    ("IfcCovering", "coverings"),
+    ("IfcPlate", "plates"),
+    ("IfcStair", "stairs"),
+    ("IfcRamp", "ramps"),
+    ("IfcCurtainWall", "curtain walls"),
+    ("IfcBuildingElementProxy", "proxies"),
+)
+"""Elements that may rest on beams and are not taken down."""
+
+
+def _left_out(model: Model) -> list[str]:
+    """Say which elements of the model weigh something that no beam is given."""
+    counts = [(len(model.file.by_type(ifc_class)), plural) for ifc_class, plural in _WEIGHING]
+    named = ", ".join(f"{count} {plural}" for count, plural in counts if count)
+    if not named:
+        return []
+    return [f"the weight of these is not taken down: {named}; add what rests on floors with --superimposed-dead"]

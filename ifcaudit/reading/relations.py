@@ -50,10 +50,6 @@ class Relations:
         """Return the parts an element is aggregated from."""
         return self._parts.get(entity_id, ())
 
-    def decomposed(self, entity_id: int) -> bool:
-        """Tell whether an element is aggregated from parts."""
-        return entity_id in self._parts
-
     def type_of(self, entity_id: int) -> Any | None:
         """Return the type object of an element."""
         return self._type.get(entity_id)
@@ -61,10 +57,6 @@ class Relations:
     def openings_of(self, entity_id: int) -> tuple[Any, ...]:
         """Return the opening elements that void an element."""
         return self._openings.get(entity_id, ())
-
-    def voids(self, entity_id: int) -> bool:
-        """Tell whether openings void an element."""
-        return entity_id in self._openings
 
     # ---- what it is made of, what it is called
 

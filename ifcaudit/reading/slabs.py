@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from math import hypot
+from math import hypot, nan
 from typing import Any
 
 import shapely
@@ -118,8 +118,8 @@ def _read_safely(context: _Context, element: Any) -> tuple[Slab, ...]:
                 storey=context.relations.storey_of(element.id()),
                 plan=Polygon(),
                 gross_area=0.0,
-                top=0.0,
-                bottom=0.0,
+                top=nan,
+                bottom=nan,
                 unreadable=f"it is malformed ({error}); repair or export the model again",
             ),
         )

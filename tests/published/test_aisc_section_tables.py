@@ -299,8 +299,8 @@ def test_ratio_of_plastic_to_elastic_modulus() -> None:
     assert median(ratios.values()) == pytest.approx(1.145, abs=0.0005)
 
 
-def test_facts_agree_with_a_second_transcription() -> None:
-    """Where another transcription of the tables is at hand, every shape in it agrees (15th edition, xsect)."""
+def test_facts_agree_with_a_second_copy_of_the_tables() -> None:
+    """Where another copy of the tables is at hand, every shape in it agrees (15th edition, xsect)."""
     xsect_data = pytest.importorskip("xsect.data.query_db", reason="the package xsect is not installed")
     import sqlite3
 

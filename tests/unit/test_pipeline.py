@@ -119,3 +119,16 @@ def test_second_beam_with_the_same_global_id_is_not_checked(tmp_path: Path) -> N
     assert found["Roof joist CD 2.5"].status is Status.ADEQUATE
     assert found["Roof joist CD 5.0"].status is Status.NOT_CHECKED
     assert found["Roof joist CD 5.0"].reason == f"another beam has its GlobalId {first_id}: give it its own"
+
+
+def test_elements_that_weigh_but_are_not_taken_down_are_counted(tmp_path: Path) -> None:
+    """A covering and a stair in the model weigh on nothing in the audit; the findings say so, and what to do."""
+    model = SteelModel()
+    model.element(model.extrusion(model.i_profile(), 6000))
+    model.element(ifc_class="IfcCovering", Name="Tiles")
+    model.element(ifc_class="IfcStair", Name="Stair")
+    path = tmp_path / "model.ifc"
+    model.file.write(str(path))
+    assert (
+        "the weight of these is not taken down: 1 coverings, 1 stairs; add what rests on floors with --superimposed-dead"
+    ) in ifcaudit.audit(path).findings

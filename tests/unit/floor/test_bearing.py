@@ -40,6 +40,8 @@ def test_gap_under_the_slab_is_remarked() -> None:
     """A contact across 80 mm is taken, and said."""
     (line,) = lines(3.92)
     assert line.finding == "its top lies 80 mm below the underside of slab S; taken as carrying it"
+    assert not line.on_flange  # load passes through packs, but nothing holds the flange sideways
+    assert line.covered == ()
 
 
 def test_slab_on_the_bottom_flange_loads_the_beam_but_does_not_hold_its_top() -> None:
@@ -66,10 +68,14 @@ def test_covered_stretch_stops_at_an_opening() -> None:
 
 
 def test_wall_below_carries_a_slab_and_a_thin_partition_does_not() -> None:
-    """A 200 mm wall up to the underside is a support line, an 80 mm partition is none."""
+    """Walls of 200 mm and of exactly 100 mm up to the underside are support lines, an 80 mm partition is none."""
     stacks, _ = stack_slabs([slab("S", box(0, -3, 8, 3))], [360.0])
-    walls = [wall("W", (0, 0), (8, 0), top=4.0), wall("P", (0, 1), (8, 1), top=4.0, thickness=0.08)]
-    assert [line.line.global_id for line in bearing_lines(stacks, [], walls)[0]] == ["W"]
+    walls = [
+        wall("W", (0, 0), (8, 0), top=4.0),
+        wall("T", (0, 2.3), (8, 2.3), top=4.0, thickness=0.1),
+        wall("P", (0, 1), (8, 1), top=4.0, thickness=0.08),
+    ]
+    assert [line.line.global_id for line in bearing_lines(stacks, [], walls)[0]] == ["T", "W"]
 
 
 def test_walls_standing_on_the_floor_are_counted_and_those_below_or_above_are_not() -> None:

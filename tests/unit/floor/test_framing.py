@@ -92,6 +92,17 @@ def test_wall_that_only_touches_the_side_carries_nothing() -> None:
     assert found.start.carrier is Carrier.COLUMN
 
 
+@pytest.mark.parametrize(("thickness", "carrier"), [(0.1, Carrier.WALL), (0.08, None)])
+def test_partition_carries_no_beam_end(thickness: float, carrier: Carrier | None) -> None:
+    """A wall of 100 mm is a support, a thinner one is not: the end is then reported as carried by nothing."""
+    found = framed(
+        [beam("J", (0.0, 0.0), (5.0, 0.0))],
+        [wall("W", (0.0, -3.0), (0.0, 3.0), thickness=thickness), column("B", 5, 0)],
+        "J",
+    )
+    assert (found.start.carrier if found.start else None) is carrier
+
+
 def test_beam_lying_along_a_wall_does_not_span_freely() -> None:
     """A lintel drawn inside a wall over its openings is marked as bedded in it."""
     lintel = beam("L", (1.0, 0.0), (4.0, 0.0))

@@ -141,24 +141,6 @@ def test_wall_carrying_a_slab_edge_takes_its_share_to_the_ground() -> None:
     assert loading(result, "J3").tributary_width == pytest.approx(3.0, rel=0.06)
 
 
-def test_walls_that_take_part_of_a_floor_are_stated_as_an_assumption() -> None:
-    """That a wall bears is assumed: the floor's inputs say so, and what settles it."""
-    plan = slab("S", box(0, 0, 3, 6))
-    stacks, _ = stack_slabs([plan], [360.0])
-
-    def density(material: object) -> Sourced[float]:
-        return Sourced(value=2400.0, source=Source.MODEL)
-
-    without = dict(area_load(stacks[0], rules(), density).inputs)
-    stated = dict(area_load(stacks[0], rules(), density, bearing_walls=2).inputs)["walls under the floor"]
-    assert "walls under the floor" not in without
-    assert stated.source is Source.ASSUMED
-    assert stated.where == "part of S rests on walls: 2 walls that reach it are taken as bearing"
-    assert stated.remedy == (
-        "Leave walls that do not bear out of the model, so that the beams beside them take their share."
-    )
-
-
 def test_topping_on_part_of_the_slab_weighs_on_the_beams_below_it_only() -> None:
     """A 50 mm topping over the first bay weighs 0.05 x 2400 g on the joists of that bay.
 

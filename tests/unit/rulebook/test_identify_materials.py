@@ -69,7 +69,7 @@ def test_several_grades_give_the_weakest() -> None:
         (text("staal"), "W", "A992", 'the model says "staal", no grade known to the rules', "W sections"),
         (text("Solid"), "HP", "A572-50", 'the model says "Solid", no grade known to the rules', "HP sections"),
         (text(), "HSS", "A500-C", "the model names no material", "HSS sections"),
-        (text("Stahl"), "", "A36", 'the model says "Stahl", no grade known to the rules',
+        (text("Stahl"), "", "S235", 'the model says "Stahl", no grade known to the rules',
          "sections outside the catalogue"),
     ],
 )  # fmt: skip
@@ -131,7 +131,7 @@ def test_a_material_that_nothing_tells(material: MaterialText, problem: str) -> 
 def test_a_steel_shape_without_a_material_is_steel() -> None:
     """An I-shape outside the catalogue with no material gets the weakest common grade, as assumed."""
     match = identify_material(text(), "", RULES.materials, kind=SectionKind.I_SHAPE)
-    assert (match.material.value.grade, match.material.source) == ("A36", Source.ASSUMED)
+    assert (match.material.value.grade, match.material.source) == ("S235", Source.ASSUMED)
 
 
 @pytest.mark.parametrize(
