@@ -13,6 +13,7 @@ from math import hypot
 
 import numpy as np
 import shapely
+from shapely import Polygon
 from shapely.geometry.base import BaseGeometry
 
 from ifcaudit.model.framing import SupportLine, Vector2
@@ -75,6 +76,8 @@ def line_load(area: BaseGeometry, direction: Vector2, line: SupportLine) -> Line
     s = np.stack([_oblique(points, (x0, y0), (dx, dy), sine) for points in (starts, ends)])
     t = np.stack([_across(points, (x0, y0), (ux, uy), sine) for points in (starts, ends)])
     stations = np.unique(s)
+    if not len(stations):
+        return LineLoad(np.zeros((0, 2)), np.zeros((0, 2)))
     stations = stations[np.concatenate([[True], np.diff(stations) > SHORTEST])]
     if len(stations) < 2:
         return LineLoad(np.zeros((0, 2)), np.zeros((0, 2)))
@@ -85,10 +88,14 @@ def line_load(area: BaseGeometry, direction: Vector2, line: SupportLine) -> Line
 
 
 def _edges(area: BaseGeometry) -> tuple[FloatArray, FloatArray]:
-    """All edges, outer rings counter-clockwise and holes clockwise."""
-    rings = []
+    """All edges, outer rings counter-clockwise and holes clockwise; lines and points, as cuts return them, are empty."""
+    rings: list[FloatArray] = []
     for part in shapely.get_parts(shapely.orient_polygons(area)):
+        if not isinstance(part, Polygon):
+            continue
         rings += [shapely.get_coordinates(ring) for ring in (part.exterior, *part.interiors)]
+    if not rings:
+        return np.zeros((0, 2)), np.zeros((0, 2))
     return np.concatenate([ring[:-1] for ring in rings]), np.concatenate([ring[1:] for ring in rings])
 
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from shapely import MultiPolygon, Polygon, box
+from shapely import GeometryCollection, LineString, MultiPolygon, Polygon, box
 
 from ifcaudit.floor.line_load import line_load
 from ifcaudit.model.framing import Carrier, SupportLine
@@ -44,6 +44,15 @@ def test_oblique_travel_shifts_the_load_and_keeps_its_total() -> None:
     assert load.positions.ravel().tolist() == pytest.approx([2.0, 3.0, 3.0, 4.0])
     assert load.widths.ravel().tolist() == pytest.approx([0.0, 1.0, 1.0, 0.0])
     assert load.area == pytest.approx(1.0)
+
+
+def test_lines_left_over_by_a_cut_carry_nothing() -> None:
+    """Two parts that also touch along an edge intersect in a polygon and a line: the line has no area."""
+    cut = GeometryCollection([box(1, 0, 3, 2), LineString([(4, 0), (6, 0)])])
+    load = line_load(cut, UP, LINE)
+    assert load.positions.tolist() == [[1.0, 3.0]]
+    assert load.area == pytest.approx(4.0)
+    assert line_load(LineString([(0, 0), (2, 1)]), UP, LINE).area == 0.0
 
 
 def test_reversing_the_line_mirrors_the_stations() -> None:
