@@ -88,7 +88,7 @@ def line_load(area: BaseGeometry, direction: Vector2, line: SupportLine) -> Line
 
 
 def _edges(area: BaseGeometry) -> tuple[FloatArray, FloatArray]:
-    """All edges, outer rings counter-clockwise and holes clockwise; lines and points, as cuts return them, are empty."""
+    """All edges, outer rings counter-clockwise and holes clockwise; lines and points have none."""
     rings: list[FloatArray] = []
     for part in shapely.get_parts(shapely.orient_polygons(area)):
         if not isinstance(part, Polygon):
