@@ -75,6 +75,8 @@ def missing_input(loading: BeamLoading) -> str:
         return loading.problem
     if member.problem:
         return member.problem
+    if member.section is None or member.material is None:
+        return "its section or material is not known: name them in the model"
     if loading.tributary_area <= 0.0:
         if loading.uncertain:
             return f"no floor load reaches it, and {loading.uncertain[0]}"

@@ -256,8 +256,10 @@ class _Trapezoids:
         (s0, s1), (t0, t1) = self._s[edge].tolist(), self._t[edge].tolist()
         return float(t0 + (t1 - t0) * (station - s0) / (s1 - s0))
 
-    def preference(self) -> tuple[bool, bool, float, list[str]]:
-        """Order of choice: spans between two supports first, then fewest unheld parts, then the shortest span.
+    def preference(self) -> tuple[bool, float, float, list[str]]:
+        """Order of choice: spans between two supports first, of those the shortest, else the fewest unheld parts.
+
+        An opening that leaves a part of the panel unheld must not turn the span of all the rest.
 
         A square panel has no shorter span: there the supports of the lower GlobalIds are taken, which at least does
         not depend on how the building is turned.
@@ -275,11 +277,12 @@ class _Trapezoids:
             elif held == 0:
                 unheld += area
         if total <= 0.0:
-            return True, True, 0.0, holders
+            return True, 0.0, 0.0, holders
         spans = both >= LEAST_HELD_SHARE * total
         length = moment / both if both > 0.0 else 0.0
         rounded = float(f"{length:.6g}")
-        return not spans, unheld > 0.01 * total, rounded if spans else unheld / total, holders
+        loose = round(unheld / total, 6)
+        return not spans, rounded if spans else loose, loose, holders
 
     def _holders_in_use(self) -> set[int]:
         ends = {self._holders[edge] for *_, lower, upper in self._pieces for edge in (lower, upper)}

@@ -32,9 +32,9 @@ LIVE_CASES = (LoadCase.LIVE, LoadCase.LIVE_UNREDUCED, LoadCase.ROOF_LIVE)
 LEAST_SPAN = 0.05
 """Distance between support centres below which there is no span [m]."""
 UNASSIGNED_REMARK = 0.5
-"""Area of a slab part without support above which the beams next to it are not called adequate [m²]."""
+"""Area of a slab part without support above which the beams around it are not called adequate [m²]."""
 NEXT_TO = 0.5
-"""Distance up to which a slab part lies next to a beam [m]."""
+"""Distance up to which a slab part lies next to a beam; the nearest two are always taken to [m]."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -269,10 +269,12 @@ def _mark_uncertain_beside(
     part: shapely.Polygon | shapely.MultiPolygon, floor: LoadedSlab, paths: Mapping[str, _Path]
 ) -> None:
     name = floor.stack.slab.name or floor.stack.slab.global_id
-    for bearing in floor.lines:
-        line = bearing.line
+    lines = [bearing.line for bearing in floor.lines]
+    distances = [part.distance(LineString([line.start, line.end])) for line in lines]
+    reach = max([NEXT_TO, *sorted(distances)[1:2]])
+    for line, distance in zip(lines, distances, strict=True):
         path = paths.get(line.global_id)
-        if path is not None and part.distance(LineString([line.start, line.end])) < NEXT_TO:
+        if path is not None and distance <= reach:
             path.uncertain.append(f"{part.area:.1f} m² of slab {name} beside it rests on nothing")
 
 

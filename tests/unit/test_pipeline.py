@@ -134,3 +134,51 @@ def test_elements_that_weigh_but_are_not_taken_down_are_counted(tmp_path: Path) 
         "the weight of these is not taken down: 1 coverings, 1 stairs; "
         "add what rests on floors with --superimposed-dead"
     )
+
+
+def block(folder: Path, name: str, depth: float, width: float) -> BeamResult:
+    """A beam of 6 m drawn as a box of triangles."""
+    model = SteelModel()
+    corners = [(x, y, z) for x in (0.0, 6000.0) for y in (0.0, width) for z in (0.0, depth)]
+    quads = [(0, 1, 3, 2), (4, 6, 7, 5), (0, 4, 5, 1), (2, 3, 7, 6), (0, 2, 6, 4), (1, 5, 7, 3)]
+    faces = [(a + 1, b + 1, c + 1) for q in quads for a, b, c in ((q[0], q[1], q[2]), (q[0], q[2], q[3]))]
+    points = model.make("IfcCartesianPointList3D", CoordList=corners)
+    mesh = model.make("IfcTriangulatedFaceSet", Coordinates=points, CoordIndex=faces)
+    model.element(mesh, kind="Tessellation", Name=name)
+    for x in (0.0, 6000.0):
+        post = model.outline([(x - 100, 0), (x + 100, 0), (x + 100, width), (x - 100, width)])
+        model.element(
+            model.extrusion(post, depth + 2000, position=model.axes((0, 0, -2000))), ifc_class="IfcColumn", Name="C"
+        )
+    path = folder / "block.ifc"
+    model.file.write(str(path))
+    return first(ifcaudit.audit(path))
+
+
+def test_mesh_is_taken_for_its_name_only_where_its_box_agrees(tmp_path: Path) -> None:
+    """A W16X26 is 15.7 by 5.50 in (398.8 by 139.7 mm); a mesh of that name and 300 by 300 mm is not judged."""
+    assert block(tmp_path, "W16X26", 398.8, 139.7).section == "W16X26"
+    wrong = block(tmp_path, "W16X26", 300.0, 300.0)
+    assert wrong.status is Status.NOT_CHECKED
+    assert wrong.reason == (
+        "named W16X26 (399 x 140 mm) but drawn as a mesh of 300 x 300 mm: correct the one that is wrong in the model"
+    )
+
+
+def test_cut_solid_is_said_to_be_checked_whole(tmp_path: Path) -> None:
+    """A cope is not followed: the finding says that the full section is checked."""
+    model = SteelModel()
+    plane = model.make("IfcPlane", Position=model.axes((0, 0, 150), (0, 1, 0), (0, 0, 1)))
+    clipped = model.make(
+        "IfcBooleanClippingResult",
+        Operator="DIFFERENCE",
+        FirstOperand=model.extrusion(model.i_profile(), 6000),
+        SecondOperand=model.make("IfcHalfSpaceSolid", BaseSurface=plane, AgreementFlag=False),
+    )
+    model.element(clipped, kind="Clipping")
+    path = tmp_path / "cope.ifc"
+    model.file.write(str(path))
+    assert (
+        "its solid is cut (cope, notch or hole): the full section is checked, not what is left of it"
+        in first(ifcaudit.audit(path)).findings
+    )

@@ -120,6 +120,13 @@ def test_column_under_midspan_is_an_interior_support() -> None:
     assert [support.name for support in found.interior] == ["M"]
 
 
+def test_column_a_metre_inside_the_end_is_no_end_support() -> None:
+    """A beam that runs 1 m beyond its column overhangs: the column is inside, the end is free."""
+    found = framed([beam("G", (0.0, 0.0), (8.0, 0.0))], [column("A", 1, 0, top=3.6), column("B", 8, 0)], "G")
+    assert found.start is None
+    assert [support.name for support in found.interior] == ["A"]
+
+
 def test_column_on_top_of_midspan_stands_on_the_beam() -> None:
     """A column that starts at the floor above a beam is a transfer, not a support."""
     found = framed(

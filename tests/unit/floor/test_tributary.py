@@ -130,6 +130,17 @@ def test_beams_that_are_not_parallel_share_by_the_mid_line() -> None:
     assert found == pytest.approx({"A": 8.0, "B": 8.0})
 
 
+def test_openings_do_not_turn_the_span_of_a_panel() -> None:
+    """Two openings in a 3 m by 6 m panel leave an island between them: all the rest still spans the 3 m.
+
+    Of 16.4 m² the island of 1.2 x 2 rests on nothing; the joists share the rest, the girders get none.
+    """
+    plan = box(3, 0, 6, 6).difference(box(3.5, 2, 3.9, 4)).difference(box(5.1, 2, 5.5, 4))
+    layout = lay_out(plan, frame(9, 6, (0, 3, 6, 9)))
+    assert areas(layout) == pytest.approx({"J3": 7.0, "J6": 7.0})
+    assert layout.findings[0] == "2.4 m² span between free edges and rest on no beam or wall"
+
+
 def test_slab_on_nothing_is_unassigned_with_a_finding() -> None:
     """No support, no strip."""
     layout = lay_out(box(0, 0, 4, 5), [])
@@ -168,6 +179,13 @@ def test_panel_with_a_free_side_spans_one_way() -> None:
     """Three held sides make no two-way panel."""
     found = areas(lay_out(box(0, 0, 6, 5), [*frame(6, 5, (0,))], TWO_WAY))
     assert found == pytest.approx({"G0": 15.0, "G1": 15.0})
+
+
+def test_panel_held_along_part_of_a_side_spans_one_way() -> None:
+    """A beam under half of the upper edge leaves the perimeter 86 % held: no two-way action."""
+    lines = [line("G0", 0, 0, 6, 0), line("G1", 0, 5, 3, 5), line("J0", 0, 0, 0, 5), line("J6", 6, 0, 6, 5)]
+    layout = lay_out(box(0, 0, 6, 5), lines, TWO_WAY)
+    assert not any(strip.two_way for strip in layout.strips)
 
 
 def test_beam_that_stops_at_a_column_amid_the_slab_still_divides_it() -> None:

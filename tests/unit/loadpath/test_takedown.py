@@ -2,82 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
 from dataclasses import replace
-from functools import cache
 
 import pytest
 from helpers.scene import beam, column, slab, wall
-from shapely import Polygon, box
+from helpers.takedowns import GRAVITY, bay, loading, run
+from shapely import box
 
-from ifcaudit.floor.bearing import bearing_lines
-from ifcaudit.floor.framing import frame_beams
-from ifcaudit.floor.stacking import stack_slabs
-from ifcaudit.floor.tributary import lay_out_slab
-from ifcaudit.loadpath.area_loads import area_load, mass_per_area
-from ifcaudit.loadpath.members import Member
-from ifcaudit.loadpath.takedown import BeamLoading, LoadedSlab, Takedown, take_down
-from ifcaudit.model.building import Beam, Slab, VerticalSupport
-from ifcaudit.model.framing import SlabBehaviour
 from ifcaudit.model.loads import LoadCase
-from ifcaudit.provenance import Source, Sourced
-from ifcaudit.rulebook.loader import load_rules
-from ifcaudit.rulebook.records import RuleSet
-
-GRAVITY = 9.80665
-
-
-@cache
-def rules() -> RuleSet:
-    """Rules with loads that are easy to add up: 3 kPa live, no partitions, 0.5 kPa superimposed."""
-    return load_rules("us-lrfd", live_load=3000.0, superimposed_dead=500.0)
-
-
-def run(beams: Sequence[Beam], supports: Sequence[VerticalSupport], slabs: Sequence[Slab]) -> Takedown:
-    """Take a scene's loads down with W16X26 beams of A992."""
-    section = next(item for item in rules().catalogue.series["W"] if item.designation == "W16X26")
-    material = rules().materials.grades["A992"]
-    framed = frame_beams(beams, supports)
-    members = [
-        Member(
-            framed=item,
-            section=Sourced(value=section, source=Source.MODEL),
-            series="W",
-            material=Sourced(value=material, source=Source.MODEL),
-        )
-        for item in framed
-    ]
-
-    def density(material: object) -> Sourced[float]:
-        return Sourced(value=2400.0, source=Source.MODEL)
-
-    stacks, _ = stack_slabs(slabs, [mass_per_area(item, density) for item in slabs])
-    lines = bearing_lines(stacks, framed, supports)
-    floors = [
-        LoadedSlab(
-            stack=stack,
-            load=area_load(stack, rules(), density),
-            lines=rests_on,
-            layout=lay_out_slab(
-                stack.slab.global_id, stack.slab.plan, [item.line for item in rests_on], SlabBehaviour()
-            ),
-        )
-        for stack, rests_on in zip(stacks, lines, strict=True)
-    ]
-    return take_down(members, floors, {})
-
-
-def bay(plan: Polygon | None = None) -> tuple[list[Beam], list[VerticalSupport], list[Slab]]:
-    """A bay 9 m by 6 m: girders along x at y = 0 and 6, joists along y at x = 0, 3, 6, 9, columns at the corners."""
-    girders = [beam("G0", (0, 0), (9, 0), height=0.5), beam("G6", (0, 6), (9, 6), height=0.5)]
-    joists = [beam(f"J{x}", (x, 0.02), (x, 5.98), height=0.4) for x in (0, 3, 6, 9)]
-    columns = [column(f"C{x}{y}", x, y) for x in (0, 9) for y in (0, 6)]
-    return girders + joists, columns, [slab("S", plan or box(0, 0, 9, 6))]
-
-
-def loading(result: Takedown, name: str) -> BeamLoading:
-    """Return one beam's loading."""
-    return next(item for item in result.beams if item.member.beam.name == name)
 
 
 def test_joist_carries_its_spacing_and_girder_half_of_each_joist() -> None:

@@ -208,3 +208,15 @@ def test_members_are_candidates_when_they_are_joists_rafters_or_purlins(tmp_path
         model.element(model.extrusion(model.i_profile(), 6000), ifc_class="IfcMember", Name=name)
     model.element(model.extrusion(model.i_profile(), 6000), ifc_class="IfcMember", Name="M5", PredefinedType="PURLIN")
     assert [beam.name for beam in model.read(tmp_path)] == ["Sparren-3", "Gording 2", "M5"]
+
+
+def test_member_drawn_with_its_profile_along_it_gets_its_axis_from_the_longest_side(tmp_path: Path) -> None:
+    """A lintel drawn as its 4 m by 0.2 m plan outline and extruded 0.3 m upwards runs along the 4 m."""
+    model = SteelModel()
+    plan = model.outline([(0, 0), (4000, 0), (4000, 200), (0, 200)])
+    model.element(model.extrusion(plan, 300, position=model.axes((0, 0, 2000))))
+    beam = only(model.read(tmp_path))
+    assert sorted((beam.start[0], beam.end[0])) == pytest.approx([0.0, 4.0])
+    assert (beam.height, beam.width) == pytest.approx((0.3, 0.2))
+    assert beam.profile is None
+    assert beam.findings == ("drawn with its profile along its length",)
